@@ -1,0 +1,72 @@
+import { index, int, mysqlEnum, mysqlTable, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
+import { id, jsonText, moment } from "./columns";
+import { detections } from "./detections";
+import { groups } from "./groups";
+import { runs } from "./runs";
+import { users } from "./users";
+import type { VersionArchive } from "./run-versions";
+
+/** What makes an analysis: with the same run version and detection it gives the same bytes again. */
+export interface AnalysisParameters {
+  detectionId: string;
+  readoutCorrection: boolean;
+  estimator: "plug-in" | "unbiased";
+  bootstrap: { replicates: number; seed: number; interval: "percentile" | "bca" };
+  traces: { kind: "reference"; site: number } | { kind: "distance"; bulk?: number[] };
+  front: {
+    rule: "fraction-of-max" | "fixed-level" | "noise-multiple";
+    level: number;
+    method: "isotonic" | "first";
+    hold: number;
+    minSignal: number;
+    absolute: boolean;
+    throughOrigin: boolean;
+  };
+}
+
+export interface AnalysisProvenance {
+  runVersion: number;
+  archives: VersionArchive[];
+  brightIs: "up" | "down";
+  /** `[site][x]` or `[site][x, y]` */
+  positions: number[][];
+  detectionNumber: number;
+  programVersion: string;
+}
+
+/** Key figures for tables and strips; null where there is no fit. */
+export interface AnalysisSummary {
+  verdict: string;
+  beta: { value: number | null; error: number | null; low: number | null; high: number | null; unbounded: boolean } | null;
+  gamma: { value: number; error: number; low: number; high: number } | null;
+  v_sites_per_ms: { value: number; error: number; low: number; high: number } | null;
+  resolvedPoints: number;
+  points: number;
+  warnings: { code: string; message: string }[];
+}
+
+export const analyses = mysqlTable(
+  "analyses",
+  {
+    id: id().primaryKey(),
+    groupId: id().notNull().references(() => groups.id),
+    runId: id().notNull().references(() => runs.id),
+    runVersion: int().notNull(),
+    detectionId: id().notNull().references(() => detections.id),
+    number: int().notNull(),
+    label: varchar({ length: 120 }),
+    parameters: jsonText<AnalysisParameters>()().notNull(),
+    provenance: jsonText<AnalysisProvenance>()().notNull(),
+    state: mysqlEnum(["queued", "running", "done", "failed", "cancelled"]).notNull(),
+    summary: jsonText<AnalysisSummary>()(),
+    jobId: id(),
+    createdBy: id().notNull().references(() => users.id),
+    createdAt: moment().notNull(),
+    finishedAt: moment(),
+  },
+  (table) => [
+    uniqueIndex("analyses_numbered").on(table.runId, table.number),
+    /** Runs table and run page: the latest analyses of a group's runs. */
+    index("analyses_by_run").on(table.groupId, table.runId, table.state),
+  ],
+);

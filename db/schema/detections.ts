@@ -1,0 +1,43 @@
+import { index, int, mysqlEnum, mysqlTable, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
+import { id, jsonText, moment } from "./columns";
+import { groups } from "./groups";
+import { runs } from "./runs";
+import { users } from "./users";
+
+/** One site of a saved detection; null where the method cannot tell. */
+export interface DetectionSite {
+  site: number;
+  threshold: number;
+  falseBright: number | null;
+  falseDark: number | null;
+  falseBrightInterval: [number, number] | null;
+  falseDarkInterval: [number, number] | null;
+  fidelity: number | null;
+  /** What the ε's rest on, for their own uncertainty: Beta(x + ½, K − x + ½) per rate. */
+  evidence: { dark: { errors: number; shots: number }; bright: { errors: number; shots: number } } | null;
+  /** Fitted Poisson components, when a mixture was fitted. */
+  mixture: { dark: number; bright: number; brightWeight: number } | null;
+  warnings: { code: string; message: string }[];
+}
+
+/** A saved set of thresholds; never edited, only superseded by a higher number. */
+export const detections = mysqlTable(
+  "detections",
+  {
+    id: id().primaryKey(),
+    groupId: id().notNull().references(() => groups.id),
+    runId: id().notNull().references(() => runs.id),
+    runVersion: int().notNull(),
+    number: int().notNull(),
+    method: mysqlEnum(["fixed", "mixture", "calibration"]).notNull(),
+    label: varchar({ length: 120 }),
+    sites: jsonText<DetectionSite[]>()().notNull(),
+    createdBy: id().notNull().references(() => users.id),
+    createdAt: moment().notNull(),
+  },
+  (table) => [
+    uniqueIndex("detections_numbered").on(table.runId, table.number),
+    /** A group's detection by id is the primary key; this one lists a run's. */
+    index("detections_by_run").on(table.groupId, table.runId),
+  ],
+);
