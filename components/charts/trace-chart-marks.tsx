@@ -1,0 +1,112 @@
+import { area as areaShape, extent, line as lineShape, scaleLinear } from "d3";
+import { AxisBottom, AxisLeft, round } from "./axis";
+import type { ChartTheme } from "./chart-theme";
+import { plotArea, type ChartSize } from "./plot-area";
+
+/** One trace C(t) with its 95 % band. */
+export interface TraceLine {
+  label: string;
+  times_us: number[];
+  /** `[k]`; null where there is no number. */
+  value: (number | null)[];
+  low: (number | null)[];
+  high: (number | null)[];
+  /** The crossing and the level it was read at. */
+  crossing?: { time_us: number; low_us: number | null; high_us: number | null; level: number | null; resolved: boolean };
+}
+
+export interface TraceChartProps {
+  lines: TraceLine[];
+  size: ChartSize;
+  theme: ChartTheme;
+  preview?: boolean;
+  /** Room at the right for direct labels; files with many traces use it. */
+  labelled?: boolean;
+}
+
+/** Returns scales and area of a trace chart; all lines share one time axis. */
+export function traceGeometry(lines: TraceLine[], size: ChartSize, labelled = false) {
+  const area = plotArea(size, { left: 44, right: labelled ? 64 : 14, top: 26, bottom: 40 });
+  const times = lines.flatMap((line) => line.times_us);
+  const values = lines.flatMap((line) => [...line.low, ...line.high, ...line.value]).filter((value) => value !== null);
+  const [first, last] = extent(times);
+  const [lowest, highest] = extent(values);
+  return {
+    area,
+    time: scaleLinear().domain([first ?? 0, last ?? 1]).range([area.left, area.right]),
+    correlator: scaleLinear()
+      .domain([Math.min(0, lowest ?? 0), Math.max(0.01, highest ?? 1)])
+      .nice(5)
+      .range([area.bottom, area.top]),
+  };
+}
+
+/** Traces against time with their bands, zero as a hairline, level and crossing in the front's colour. */
+export function TraceChartMarks({ lines, size, theme, preview = false, labelled = false }: TraceChartProps) {
+  const { area, time, correlator } = traceGeometry(lines, size, labelled);
+  return (
+    <>
+      <AxisLeft scale={correlator} area={area} label="connected correlator C" theme={theme} />
+      <AxisBottom scale={time} area={area} label="evolution time (µs)" theme={theme} />
+      <line x1={area.left} x2={area.right} y1={round(correlator(0))} y2={round(correlator(0))} stroke={theme.hairline} />
+      {lines.map((line) => (
+        <g key={line.label} opacity={lines.length > 1 ? 0.9 : 1}>
+          <path d={bandPath(line, time, correlator)} fill={theme.accent} opacity={0.18} />
+          <path d={valuePath(line, time, correlator)} fill="none" stroke={theme.accent} strokeWidth={1.6} strokeDasharray={preview ? "5 4" : undefined} />
+          {lines.length === 1 &&
+            line.value.map((value, k) =>
+              value === null ? null : <circle key={line.times_us[k]} cx={round(time(line.times_us[k]))} cy={round(correlator(value))} r={2} fill={theme.accent} />,
+            )}
+          {line.crossing && <CrossingMark line={line} geometry={{ area, time, correlator }} theme={theme} />}
+          {labelled && <EndLabel line={line} geometry={{ area, time, correlator }} theme={theme} />}
+        </g>
+      ))}
+    </>
+  );
+}
+
+type Geometry = ReturnType<typeof traceGeometry>;
+
+function valuePath(line: TraceLine, time: Geometry["time"], correlator: Geometry["correlator"]): string {
+  const path = lineShape<number>()
+    .defined((k) => line.value[k] !== null)
+    .x((k) => round(time(line.times_us[k])))
+    .y((k) => round(correlator(line.value[k] ?? 0)));
+  return path(line.times_us.map((_, k) => k)) ?? "";
+}
+
+function bandPath(line: TraceLine, time: Geometry["time"], correlator: Geometry["correlator"]): string {
+  const path = areaShape<number>()
+    .defined((k) => line.low[k] !== null && line.high[k] !== null)
+    .x((k) => round(time(line.times_us[k])))
+    .y0((k) => round(correlator(line.low[k] ?? 0)))
+    .y1((k) => round(correlator(line.high[k] ?? 0)));
+  return path(line.times_us.map((_, k) => k)) ?? "";
+}
+
+function CrossingMark({ line, geometry, theme }: { line: TraceLine; geometry: Geometry; theme: ChartTheme }) {
+  const { area, time, correlator } = geometry;
+  if (!line.crossing || line.crossing.level === null) return null;
+  const { time_us, low_us, high_us, level, resolved } = line.crossing;
+  const y = round(correlator(level));
+  return (
+    <g>
+      <line x1={area.left} x2={area.right} y1={y} y2={y} stroke={theme.front} strokeWidth={1} strokeDasharray="2 3" />
+      {low_us !== null && high_us !== null && (
+        <line x1={round(time(low_us))} x2={round(time(high_us))} y1={y} y2={y} stroke={theme.front} strokeWidth={3} />
+      )}
+      <line x1={round(time(time_us))} x2={round(time(time_us))} y1={y} y2={area.bottom} stroke={theme.front} strokeWidth={1} />
+      <circle cx={round(time(time_us))} cy={y} r={4} fill={resolved ? theme.front : theme.paper} stroke={theme.front} strokeWidth={1.4} />
+    </g>
+  );
+}
+
+function EndLabel({ line, geometry, theme }: { line: TraceLine; geometry: Geometry; theme: ChartTheme }) {
+  const last = line.value.findLastIndex((value) => value !== null);
+  if (last < 0) return null;
+  return (
+    <text x={geometry.area.right + 4} y={round(geometry.correlator(line.value[last] ?? 0))} dy="0.34em" fontSize={10} fill={theme.muted}>
+      {line.label}
+    </text>
+  );
+}
