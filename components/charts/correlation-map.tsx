@@ -1,14 +1,15 @@
 "use client";
 
 import { bisector } from "d3";
-import { useMemo, type ReactNode } from "react";
+import { useCallback, useMemo, type ReactNode } from "react";
 import { useThemeName } from "@/components/shell/use-theme-name";
 import { plainNumber, withUncertainty } from "@/lib/number-text";
+import { CellCanvas } from "./cell-canvas";
 import { ChartFigure } from "./chart-figure";
 import { screenTheme } from "./chart-theme";
 import { CorrelationMapMarks } from "./correlation-map-marks";
+import { divergingColour } from "./diverging-colours";
 import type { FrontCurve, MapCrossing } from "./front-overlay";
-import { MapCanvas } from "./map-canvas";
 import { colourLimit, mapGeometry, type MapData } from "./map-geometry";
 import { useCursor, type Cursor } from "./use-cursor";
 import { useMeasuredWidth } from "./use-measured-width";
@@ -40,7 +41,11 @@ export function CorrelationMap(props: CorrelationMapViewProps) {
   const themeName = useThemeName();
   const size = useMemo(() => ({ width, height }), [width, height]);
   const limit = props.limit ?? colourLimit(data.rows);
-  const geometry = mapGeometry(data, size);
+  const geometry = useMemo(() => mapGeometry(data, size), [data, size]);
+  const colour = useCallback(
+    (row: number, column: number) => divergingColour(themeName, data.rows[row].values?.[column], limit),
+    [data, themeName, limit],
+  );
   const { cursor, handlers } = useCursor(
     {
       columns: data.times_us.length,
@@ -58,7 +63,7 @@ export function CorrelationMap(props: CorrelationMapViewProps) {
       table={() => <MapTable data={data} errors={props.errors} />}
     >
       <div ref={container} className="relative" style={{ height }}>
-        <MapCanvas data={data} size={size} theme={themeName} limit={limit} />
+        <CellCanvas size={size} columnEdges={geometry.columnEdges} rowEdges={geometry.rowEdges} colour={colour} />
         <svg
           {...handlers}
           role="img"

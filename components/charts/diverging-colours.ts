@@ -8,41 +8,22 @@ const ANCHORS: Record<ThemeName, { negative: string[]; zero: string; positive: s
 };
 
 const STEPS = 255;
-const tables = new Map<ThemeName, Uint8ClampedArray>();
+const tables: Record<ThemeName, string[]> = { paper: buildTable("paper"), night: buildTable("night") };
 
-/** Returns the colour table `[step][r, g, b]` of 2·255 + 1 steps from −1 to +1; zero is the ground. */
-export function divergingTable(theme: ThemeName): Uint8ClampedArray {
-  const known = tables.get(theme);
-  if (known) return known;
-  const table = buildTable(theme);
-  tables.set(theme, table);
-  return table;
-}
-
-/** Returns the row of the colour table for `value` on a scale from −limit to +limit; NaN gives −1. */
-export function divergingStep(value: number, limit: number): number {
-  if (Number.isNaN(value)) return -1;
+/** Returns a CSS colour for `value` on a scale from −limit to +limit, or null where there is no number. */
+export function divergingColour(theme: ThemeName, value: number | null | undefined, limit: number): string | null {
+  if (value === null || value === undefined || Number.isNaN(value)) return null;
   const clamped = Math.max(-1, Math.min(1, value / limit));
-  return Math.round((clamped + 1) * STEPS);
+  return tables[theme][Math.round((clamped + 1) * STEPS)];
 }
 
-/** Returns a CSS colour for `value` on a scale from −limit to +limit; NaN is transparent. */
-export function divergingColour(theme: ThemeName, value: number, limit: number): string {
-  const step = divergingStep(value, limit);
-  if (step < 0) return "transparent";
-  const table = divergingTable(theme);
-  return rgb(table[3 * step], table[3 * step + 1], table[3 * step + 2]).formatHex();
-}
-
-function buildTable(theme: ThemeName): Uint8ClampedArray {
+/** 2·255 + 1 steps from −1 to +1. */
+function buildTable(theme: ThemeName): string[] {
   const { negative, zero, positive } = ANCHORS[theme];
-  const table = new Uint8ClampedArray(3 * (2 * STEPS + 1));
-  for (let step = 0; step <= 2 * STEPS; step++) {
+  return Array.from({ length: 2 * STEPS + 1 }, (_, step) => {
     const x = step / STEPS - 1;
-    const colour = rgb(x < 0 ? between(zero, negative[1], negative[0], -x) : between(zero, positive[0], positive[1], x));
-    table.set([colour.r, colour.g, colour.b], 3 * step);
-  }
-  return table;
+    return rgb(x < 0 ? between(zero, negative[1], negative[0], -x) : between(zero, positive[0], positive[1], x)).formatHex();
+  });
 }
 
 /** Lab blend from `from` over `middle` (at one half) to `to`. */

@@ -22,6 +22,8 @@ export interface MapGeometry {
   time: ReturnType<typeof scaleLinear<number, number>>;
   /** `[k + 1]`, px: the borders between cells lie midway between times. */
   columnEdges: number[];
+  /** `[row + 1]`, px, from the foot upwards. */
+  rowEdges: number[];
   rowHeight: number;
   /** Middle of a row, px. */
   rowMiddle: (row: number) => number;
@@ -41,6 +43,7 @@ export function mapGeometry(data: MapData, size: ChartSize, margins: Margins = M
     area,
     time,
     columnEdges: borders.map((border) => time(border)),
+    rowEdges: Array.from({ length: data.rows.length + 1 }, (_, row) => area.bottom - row * rowHeight),
     rowHeight,
     rowMiddle: (row) => area.bottom - (row + 0.5) * rowHeight,
   };
