@@ -1,0 +1,14 @@
+/**
+ * What a random stream is drawn for: the last counter word of every stream, so that no two uses share draws under one
+ * seed. A number once given keeps its meaning, else recorded seeds would give other results.
+ */
+export const RANDOM_PURPOSES = {
+  /** Which shots a bootstrap replicate holds; index is the time k. */
+  bootstrapShots: 1,
+  /** The ε's of a bootstrap replicate; index is the site i. */
+  readoutErrors: 2,
+  /** Simulated runs. */
+  simulation: 3,
+} as const;
+
+export type RandomPurpose = (typeof RANDOM_PURPOSES)[keyof typeof RANDOM_PURPOSES];
