@@ -1,10 +1,13 @@
-import { interpolateLab, rgb } from "d3";
+import { hcl, interpolateLab, rgb, type HCLColor } from "d3";
 import type { ThemeName } from "@/components/shell/theme-choice";
 
-/** Ends of equal CIELAB lightness either side of the ground, so that equal |C| looks equally far from zero. */
-const ANCHORS: Record<ThemeName, { negative: string[]; zero: string; positive: string[] }> = {
-  paper: { negative: ["#12356f", "#5f8fc4"], zero: "#f8f3e7", positive: ["#d99145", "#7a3600"] },
-  night: { negative: ["#a9d0ff", "#3f74b8"], zero: "#141d31", positive: ["#b56a1c", "#ffc98a"] },
+/**
+ * CIELAB hue, chroma and lightness of the half-way and end colours: lightness is the same either side and falls (night:
+ * rises) in equal steps from the ground, so that equal |C| looks equally far from zero, also in grey print.
+ */
+const ANCHORS: Record<ThemeName, { zero: string; negative: HCLColor[]; positive: HCLColor[] }> = {
+  paper: { zero: "#f8f3e7", negative: [hcl(262, 38, 62), hcl(275, 46, 28)], positive: [hcl(66, 58, 62), hcl(52, 50, 28)] },
+  night: { zero: "#101829", negative: [hcl(268, 46, 46), hcl(255, 28, 84)], positive: [hcl(62, 56, 46), hcl(76, 44, 84)] },
 };
 
 const STEPS = 255;
@@ -22,11 +25,11 @@ function buildTable(theme: ThemeName): string[] {
   const { negative, zero, positive } = ANCHORS[theme];
   return Array.from({ length: 2 * STEPS + 1 }, (_, step) => {
     const x = step / STEPS - 1;
-    return rgb(x < 0 ? between(zero, negative[1], negative[0], -x) : between(zero, positive[0], positive[1], x)).formatHex();
+    return rgb(x < 0 ? between(zero, negative[0], negative[1], -x) : between(zero, positive[0], positive[1], x)).formatHex();
   });
 }
 
 /** Lab blend from `from` over `middle` (at one half) to `to`. */
-function between(from: string, middle: string, to: string, x: number): string {
+function between(from: string, middle: HCLColor, to: HCLColor, x: number): string {
   return x < 0.5 ? interpolateLab(from, middle)(2 * x) : interpolateLab(middle, to)(2 * x - 1);
 }
