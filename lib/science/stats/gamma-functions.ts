@@ -15,7 +15,8 @@ export function stirlingError(n: number): number {
     shifted += 1;
   }
   const s = 1 / (shifted * shifted);
-  const series = 1 / 12 - s * (1 / 360 - s * (1 / 1260 - s * (1 / 1680 - s * (1 / 1188 - s * (691 / 360360 - s / 156)))));
+  const series =
+    1 / 12 - s * (1 / 360 - s * (1 / 1260 - s * (1 / 1680 - s * (1 / 1188 - s * (691 / 360360 - s / 156)))));
   return sum + series / shifted;
 }
 

@@ -26,11 +26,7 @@ export interface OriginLineFit {
  * x and y are centred on their weighted means first, so large offsets lose no digits. Everything is NaN when
  * fewer than two different x carry weight.
  */
-export function fitWeightedLine(
-  x: ArrayLike<number>,
-  y: ArrayLike<number>,
-  weights: ArrayLike<number>,
-): LineFit {
+export function fitWeightedLine(x: ArrayLike<number>, y: ArrayLike<number>, weights: ArrayLike<number>): LineFit {
   const { total, meanX, meanY } = weightedMeans(x, y, weights);
   let spread = 0;
   let joint = 0;
