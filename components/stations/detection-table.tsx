@@ -1,0 +1,60 @@
+import { plainNumber } from "@/lib/number-text";
+import type { DetectionAnswer } from "./detection-types";
+
+/** Thresholds, error rates and fidelity of every site, in per cent where they are rates; warnings in words. */
+export function DetectionTable({ detection, siteNames }: { detection: DetectionAnswer; siteNames: string[] }) {
+  return (
+    <section className="mt-6">
+      <h2>
+        Detection {detection.number} <span className="label ml-1 font-normal">by {detection.createdBy}, {detection.createdAt.slice(0, 10)}</span>
+      </h2>
+      <div className="overflow-x-auto" tabIndex={0} role="region" aria-label={`Sites of detection ${detection.number}`}>
+        <table className="hairline-table figures mt-1">
+          <thead>
+            <tr>
+              <th scope="col">site</th>
+              <th scope="col" className="text-right">θ</th>
+              <th scope="col" className="text-right" title="P(reads bright | dark), 95 % interval">ε_d (%)</th>
+              <th scope="col" className="text-right" title="P(reads dark | bright), 95 % interval">ε_b (%)</th>
+              <th scope="col" className="text-right" title="1 − (ε_d + ε_b)/2">fidelity (%)</th>
+              <th scope="col" className="pl-6">to keep in mind</th>
+            </tr>
+          </thead>
+          <tbody>
+            {siteNames.map((name, site) => (
+              <tr key={site}>
+                <th scope="row" className="whitespace-nowrap">{name}</th>
+                <td className="text-right">{plainNumber(detection.thresholds[site])}</td>
+                <td className="text-right whitespace-nowrap">
+                  <Rate value={detection.falseBright[site]} interval={detection.falseBrightInterval[site]} />
+                </td>
+                <td className="text-right whitespace-nowrap">
+                  <Rate value={detection.falseDark[site]} interval={detection.falseDarkInterval[site]} />
+                </td>
+                <td className="text-right">{percent(detection.fidelity[site], 4)}</td>
+                <td className="pl-6 text-sm text-warning">{detection.warnings[site]?.map((warning) => warning.message).join(" ")}</td>
+              </tr>
+            ))}
+          </tbody>
+        </table>
+      </div>
+    </section>
+  );
+}
+
+function Rate({ value, interval }: { value: number | null; interval: [number, number] | null }) {
+  return (
+    <>
+      {percent(value, 3)}
+      {interval && (
+        <span className="label ml-1.5">
+          {percent(interval[0], 2)} … {percent(interval[1], 2)}
+        </span>
+      )}
+    </>
+  );
+}
+
+function percent(value: number | null, digits: number): string {
+  return value === null ? "–" : plainNumber(100 * value, digits);
+}
