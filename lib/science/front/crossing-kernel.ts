@@ -87,7 +87,9 @@ export function orientSignal(scratch: CrossingScratch, absolute: boolean): numbe
 export function crossingTime_us(scratch: CrossingScratch, peak: number, level: number, rule: FrontRule): number {
   scratch.atStart = false;
   if (peak < 0 || !(scratch.signal[peak] > 0)) return NaN;
-  return rule.method === "isotonic" ? isotonicCrossing_us(scratch, peak, level) : firstCrossing_us(scratch, level, rule.hold);
+  return rule.method === "isotonic"
+    ? isotonicCrossing_us(scratch, peak, level)
+    : firstCrossing_us(scratch, level, rule.hold);
 }
 
 /**

@@ -33,7 +33,12 @@ const HIGH_LEVEL_SIGNAL = 15;
  * Returns where one trace of the set crosses its level. Uses and overwrites `scratch`, made for the set's times.
  * A trace whose maximum or its standard error is not a number is unresolved.
  */
-export function findCrossing(traces: TraceSet, trace: number, rule: FrontRule, scratch: CrossingScratch): TraceCrossing {
+export function findCrossing(
+  traces: TraceSet,
+  trace: number,
+  rule: FrontRule,
+  scratch: CrossingScratch,
+): TraceCrossing {
   const offset = trace * traces.times_us.length;
   loadSignal(scratch, traces.times_us, traces.shotsPerTime, traces.value, offset);
   const peak = orientSignal(scratch, rule.absolute);
@@ -44,7 +49,8 @@ export function findCrossing(traces: TraceSet, trace: number, rule: FrontRule, s
   const time_us = crossingTime_us(scratch, peak, level, rule);
   const status = statusOf(maximum, peakError, time_us, scratch.atStart, rule.minSignal);
   const atEdge = peak === 0 || peak === scratch.count - 1;
-  const warnings = status === "unresolved" ? [] : warningsOf(traces, offset, { time_us, level, maximum, peakError, atEdge }, rule);
+  const warnings =
+    status === "unresolved" ? [] : warningsOf(traces, offset, { time_us, level, maximum, peakError, atEdge }, rule);
   return { status, time_us, level, maximum, peakTimeIndex, warnings };
 }
 
@@ -60,7 +66,13 @@ function statusOf(
   return atStart ? "at-start" : "resolved";
 }
 
-function levelOfTrace(traces: TraceSet, offset: number, peakTimeIndex: number, maximum: number, rule: FrontRule): number {
+function levelOfTrace(
+  traces: TraceSet,
+  offset: number,
+  peakTimeIndex: number,
+  maximum: number,
+  rule: FrontRule,
+): number {
   if (rule.rule === "fraction-of-max") return rule.level * maximum;
   if (rule.rule === "fixed-level") return rule.level;
   const errors = traces.error.subarray(offset, offset + peakTimeIndex + 1).filter((error) => Number.isFinite(error));

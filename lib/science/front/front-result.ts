@@ -78,9 +78,21 @@ export interface FrontVelocity {
   /** 1/slope of the straight line, everywhere the same; null without that fit. */
   linear_sites_per_ms: ReciprocalParameter | null;
   /** v(τ) = aβτ^{β−1} at each fitted point, with its 95 % percentile interval. */
-  powerLaw: { distance: number; time_us: number; value_sites_per_ms: number | null; low_sites_per_ms: number | null; high_sites_per_ms: number | null }[];
+  powerLaw: {
+    distance: number;
+    time_us: number;
+    value_sites_per_ms: number | null;
+    low_sites_per_ms: number | null;
+    high_sites_per_ms: number | null;
+  }[];
   /** Slopes between neighbouring distances; points at one distance are averaged first. */
-  betweenPoints: { fromDistance: number; toDistance: number; time_us: number; value_sites_per_ms: number | null; error_sites_per_ms: number | null }[];
+  betweenPoints: {
+    fromDistance: number;
+    toDistance: number;
+    time_us: number;
+    value_sites_per_ms: number | null;
+    error_sites_per_ms: number | null;
+  }[];
 }
 
 /** A fitted front for drawing, `[sample]`, with its pointwise 95 % band over replicates. */

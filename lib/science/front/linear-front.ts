@@ -32,7 +32,9 @@ export function linearFrontOf(
   const fixedOffset: Parameter = { value: 0, error: null, low: null, high: null, fitError: null };
   const front: LinearFront = {
     throughOrigin,
-    t0_us: throughOrigin ? fixedOffset : parameterOf(fit.offset, fit.offsetError, summariseReplicates(replicates.offset)),
+    t0_us: throughOrigin
+      ? fixedOffset
+      : parameterOf(fit.offset, fit.offsetError, summariseReplicates(replicates.offset)),
     v_sites_per_ms: reciprocalOf(fit.slope, fit.slopeError, summariseReplicates(replicates.slope), US_PER_MS),
     ...quality,
   };

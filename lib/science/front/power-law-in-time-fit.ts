@@ -38,7 +38,8 @@ export function fitPowerLawInTime(
   for (let iterations = 1; iterations <= MOST_ITERATIONS && damping < HARDEST_DAMPING; iterations++) {
     const step = dampedStep(at, damping);
     const next = normalEquations(lnDistance, time_us, softened_us, offset + step.offset, slope + step.slope);
-    const small = Math.abs(step.offset) <= STEP_TOLERANCE * (1 + Math.abs(offset)) && Math.abs(step.slope) <= STEP_TOLERANCE;
+    const small =
+      Math.abs(step.offset) <= STEP_TOLERANCE * (1 + Math.abs(offset)) && Math.abs(step.slope) <= STEP_TOLERANCE;
     if (next.misfit <= at.misfit) {
       offset += step.offset;
       slope += step.slope;

@@ -1,9 +1,4 @@
-import {
-  createCrossingScratch,
-  crossingTime_us,
-  loadSignal,
-  orientSignal,
-} from "@/lib/science/front/crossing-kernel";
+import { createCrossingScratch, crossingTime_us, loadSignal, orientSignal } from "@/lib/science/front/crossing-kernel";
 import type { FrontRule } from "@/lib/science/front/front-rule";
 import type { TraceSet } from "@/lib/science/front/trace-set";
 import { summariseReplicates } from "@/lib/science/front/replicate-summary";

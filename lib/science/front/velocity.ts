@@ -27,9 +27,14 @@ export function powerLawVelocity(offset: number, slope: number, time_us: number)
   return Math.exp((Math.log(time_us) - offset) / slope) / (slope * time_us);
 }
 
-function powerLawVelocities(points: FrontPoints, { offset, slope, replicates }: PowerLawFrontFitted): FrontVelocity["powerLaw"] {
+function powerLawVelocities(
+  points: FrontPoints,
+  { offset, slope, replicates }: PowerLawFrontFitted,
+): FrontVelocity["powerLaw"] {
   return Array.from(points.time_us, (time_us, p) => {
-    const spread = summariseReplicates(replicates.offset.map((o, b) => powerLawVelocity(o, replicates.slope[b], time_us)));
+    const spread = summariseReplicates(
+      replicates.offset.map((o, b) => powerLawVelocity(o, replicates.slope[b], time_us)),
+    );
     return {
       distance: points.distance[p],
       time_us,
@@ -49,7 +54,9 @@ function slopesBetween(points: FrontPoints, tau: Float64Array, replicateCount: n
     const gap = to.distance - from.distance;
     const lags = new Float64Array(replicateCount);
     for (let b = 0; b < replicateCount; b++) {
-      lags[b] = meanReplicate(points, to.members, tau, replicateCount, b) - meanReplicate(points, from.members, tau, replicateCount, b);
+      lags[b] =
+        meanReplicate(points, to.members, tau, replicateCount, b) -
+        meanReplicate(points, from.members, tau, replicateCount, b);
     }
     return {
       fromDistance: from.distance,
@@ -76,6 +83,12 @@ function meanOf(members: number[], values: Float64Array): number {
   return members.reduce((sum, p) => sum + values[p], 0) / members.length;
 }
 
-function meanReplicate(points: FrontPoints, members: number[], tau: Float64Array, replicateCount: number, b: number): number {
+function meanReplicate(
+  points: FrontPoints,
+  members: number[],
+  tau: Float64Array,
+  replicateCount: number,
+  b: number,
+): number {
   return members.reduce((sum, p) => sum + tau[points.trace[p] * replicateCount + b], 0) / members.length;
 }

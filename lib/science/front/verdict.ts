@@ -39,7 +39,11 @@ export function judgeFront(powerLaw: PowerLawFront | null, noFitReason: string):
   const verdict = verdictOf(powerLaw?.gamma ?? null);
   if (powerLaw === null || verdict === "no fit") {
     const reason = powerLaw === null ? noFitReason : "Too few replicates carry a fit to give γ an interval.";
-    return { verdict: "no fit", verdictSentence: `No fit: ${lowerFirst(reason)}`, verdictReasons: [reason, ...BETA_ALONE_REASONS] };
+    return {
+      verdict: "no fit",
+      verdictSentence: `No fit: ${lowerFirst(reason)}`,
+      verdictReasons: [reason, ...BETA_ALONE_REASONS],
+    };
   }
   return {
     verdict,
@@ -55,12 +59,20 @@ function exponentText({ beta, gamma }: PowerLawFront): string {
     return `γ = ${shortForm(gamma.value ?? NaN, gamma.error ?? NaN)}, ${INTERVAL} ${intervalText(gamma)}`;
   }
   const decimals = decimalsFor(error);
-  const ends = high === null ? `from ${fixed(low, decimals)} without upper end` : `${fixed(low, decimals)} to ${fixed(high, decimals)}`;
+  const ends =
+    high === null
+      ? `from ${fixed(low, decimals)} without upper end`
+      : `${fixed(low, decimals)} to ${fixed(high, decimals)}`;
   return `β = ${shortForm(value, error)}, ${INTERVAL} ${ends}`;
 }
 
 function intervalReason(gamma: Parameter, verdict: Verdict): string {
-  const place = { "faster than linear": "lies below 1", "slower than linear": "lies above 1", "not distinguishable from linear": "contains 1", "no fit": "" };
+  const place = {
+    "faster than linear": "lies below 1",
+    "slower than linear": "lies above 1",
+    "not distinguishable from linear": "contains 1",
+    "no fit": "",
+  };
   return `The ${INTERVAL} of γ = 1/β over all replicates, ${intervalText(gamma)}, ${place[verdict]}.`;
 }
 

@@ -31,11 +31,18 @@ describe("a straight cone of 10 µs a site", () => {
 
   test("is not distinguishable from linear", () => {
     expect(front.verdict).toBe("not distinguishable from linear");
-    expect(front.verdictSentence).toMatch(/^Not distinguishable from linear: β = \d\.\d\d\(\d\), 95\u202f% interval 0\.\d\d to 1\.\d\d\.$/);
+    expect(front.verdictSentence).toMatch(
+      /^Not distinguishable from linear: β = \d\.\d\d\(\d\), 95\u202f% interval 0\.\d\d to 1\.\d\d\.$/,
+    );
   });
 
   test("gives 100 sites per ms, no offset and γ = 1 inside the intervals", () => {
-    for (const [parameter, truth] of [[linear.v_sites_per_ms, 100], [linear.t0_us, 0], [powerLaw.gamma, 1], [powerLaw.beta, 1]] as const) {
+    for (const [parameter, truth] of [
+      [linear.v_sites_per_ms, 100],
+      [linear.t0_us, 0],
+      [powerLaw.gamma, 1],
+      [powerLaw.beta, 1],
+    ] as const) {
       expect(parameter.low).toBeLessThan(truth);
       expect(parameter.high).toBeGreaterThan(truth);
       expect(Math.abs((parameter.value ?? NaN) - truth)).toBeLessThan(3 * (parameter.error ?? NaN));
@@ -100,8 +107,12 @@ describe("the 95 % interval of γ over 150 simulated experiments of 200 replicat
     ["a straight cone", straightCone, 1],
     ["an opening cone", openingCone, 0.6],
   ])("holds the truth for %s as often as it says, and its error is the real spread", (_, cone, truth) => {
-    const gammas = Array.from({ length: experiments }, (__, seed) => bothFits(analyseFront(measureCone(cone, 200, seed), DEFAULT_FRONT_RULE).front).powerLaw.gamma);
-    const covering = gammas.filter(({ low, high }) => (low ?? NaN) <= truth && truth <= (high ?? NaN)).length / experiments;
+    const gammas = Array.from(
+      { length: experiments },
+      (__, seed) => bothFits(analyseFront(measureCone(cone, 200, seed), DEFAULT_FRONT_RULE).front).powerLaw.gamma,
+    );
+    const covering =
+      gammas.filter(({ low, high }) => (low ?? NaN) <= truth && truth <= (high ?? NaN)).length / experiments;
     expect(covering).toBeGreaterThan(0.95 - 3 * monteCarlo);
     const values = gammas.map(({ value }) => value ?? NaN);
     const mean = values.reduce((sum, value) => sum + value / experiments, 0);
@@ -154,11 +165,15 @@ describe("fit options", () => {
   });
 
   test("the power law in τ itself is another fit, within its error of that in ln τ, and converges in every replicate", () => {
-    const inTime = bothFits(analyseFront(traces, DEFAULT_FRONT_RULE, { throughOrigin: false, powerLawIn: "time" }).front).powerLaw;
+    const inTime = bothFits(
+      analyseFront(traces, DEFAULT_FRONT_RULE, { throughOrigin: false, powerLawIn: "time" }).front,
+    ).powerLaw;
     const inLogTime = bothFits(analyseFront(traces, DEFAULT_FRONT_RULE, LOG_TIME).front).powerLaw;
     expect(inTime.fittedIn).toBe("time");
     expect(inTime.gamma.value).not.toBe(inLogTime.gamma.value);
-    expect(Math.abs((inTime.gamma.value ?? NaN) - (inLogTime.gamma.value ?? NaN))).toBeLessThan(2 * (inTime.gamma.error ?? NaN));
+    expect(Math.abs((inTime.gamma.value ?? NaN) - (inLogTime.gamma.value ?? NaN))).toBeLessThan(
+      2 * (inTime.gamma.error ?? NaN),
+    );
     expect(inTime.replicatesFitted).toBe(200);
   });
 });
@@ -167,36 +182,57 @@ describe("points that cannot be fitted", () => {
   test("are listed with the reason, and fewer than three points give no fit", () => {
     const rise = [0, 0.05, 0.3, 1, 0.5];
     const value = [rise, [0.5, 0.6, 0.8, 1, 0.5], rise.map(() => 0), rise];
-    const wobble = (b: number) => value.map((samples) => samples.map((sample, k) => sample * (1 + 0.02 * Math.sin(7 * b + k))));
+    const wobble = (b: number) =>
+      value.map((samples) => samples.map((sample, k) => sample * (1 + 0.02 * Math.sin(7 * b + k))));
     const replicates = Array.from({ length: 40 }, (_, b) => wobble(b));
-    const { front } = analyseFront(traceSetOf({ times_us: [1, 2, 3, 4, 5], distances: [1, 2, 3, 4], value, replicates }), DEFAULT_FRONT_RULE);
+    const { front } = analyseFront(
+      traceSetOf({ times_us: [1, 2, 3, 4, 5], distances: [1, 2, 3, 4], value, replicates }),
+      DEFAULT_FRONT_RULE,
+    );
     expect(front.points.map(({ status }) => status)).toEqual(["resolved", "at-start", "unresolved", "resolved"]);
     expect(front.points.map(({ fitted }) => fitted)).toEqual([true, false, false, true]);
     expect(front.points[1].time_us).toBe(1);
     expect(front.points[2].time_us).toBeNull();
-    expect(front.unresolved.map(({ label, status }) => [label, status])).toEqual([["site 2", "at-start"], ["site 3", "unresolved"]]);
+    expect(front.unresolved.map(({ label, status }) => [label, status])).toEqual([
+      ["site 2", "at-start"],
+      ["site 3", "unresolved"],
+    ]);
     const reason = "A fit needs at least 3 resolved points with an error bar; there are 2.";
     expect([front.linear, front.powerLaw]).toEqual([{ reason }, { reason }]);
     expect([front.verdict, front.comparison.deltaBic, front.curves.linear]).toEqual(["no fit", null, null]);
-    expect(front.verdictSentence).toBe("No fit: a fit needs at least 3 resolved points with an error bar; there are 2.");
+    expect(front.verdictSentence).toBe(
+      "No fit: a fit needs at least 3 resolved points with an error bar; there are 2.",
+    );
   });
 
   test("include every point of a trace set without replicates, whose crossings are still given", () => {
     const { front } = analyseFront(traceSetOfRun(expectedRun("xy-chain-12")), DEFAULT_FRONT_RULE);
-    expect(front.points.map(({ time_us }) => time_us)).toEqual(expectedRun("xy-chain-12").statistical.crossing_us.map((time) => expect.closeTo(time ?? NaN, 8)));
+    expect(front.points.map(({ time_us }) => time_us)).toEqual(
+      expectedRun("xy-chain-12").statistical.crossing_us.map((time) => expect.closeTo(time ?? NaN, 8)),
+    );
     expect(front.points.every(({ error_us, failedShare }) => error_us === null && failedShare === null)).toBe(true);
     expect(front.verdict).toBe("no fit");
   });
 
   test("at one distance only give no fit", () => {
     const traces: TraceSet = { ...measureCone(straightCone, 100, 7), distances: new Float64Array(10).fill(2) };
-    expect(analyseFront(traces, DEFAULT_FRONT_RULE).front.linear).toEqual({ reason: "All resolved points lie at the same distance." });
+    expect(analyseFront(traces, DEFAULT_FRONT_RULE).front.linear).toEqual({
+      reason: "All resolved points lie at the same distance.",
+    });
   });
 
   test("of the same distance are averaged for the slopes between points", () => {
-    const traces: TraceSet = { ...measureCone(straightCone, 100, 8), distances: Float64Array.of(1, 1, 2, 2, 3, 3, 4, 4, 5, 5) };
+    const traces: TraceSet = {
+      ...measureCone(straightCone, 100, 8),
+      distances: Float64Array.of(1, 1, 2, 2, 3, 3, 4, 4, 5, 5),
+    };
     const between = analyseFront(traces, DEFAULT_FRONT_RULE).front.velocity.betweenPoints;
-    expect(between.map(({ fromDistance, toDistance }) => [fromDistance, toDistance])).toEqual([[1, 2], [2, 3], [3, 4], [4, 5]]);
+    expect(between.map(({ fromDistance, toDistance }) => [fromDistance, toDistance])).toEqual([
+      [1, 2],
+      [2, 3],
+      [3, 4],
+      [4, 5],
+    ]);
     expect(between.every(({ error_sites_per_ms }) => (error_sites_per_ms ?? 0) > 0)).toBe(true);
   });
 });
@@ -206,5 +242,7 @@ test("warnings name how many traces they concern", () => {
   const { front } = analyseFront(measureCone(short, 100, 9), DEFAULT_FRONT_RULE);
   const atEdge = front.points.filter(({ warnings }) => warnings.includes("maximum-at-window-edge")).length;
   expect(atEdge).toBeGreaterThan(0);
-  expect(front.warnings[0]).toMatch(new RegExp(`^${atEdge} of 10 traces (has|have) the largest signal at the edge of the window`));
+  expect(front.warnings[0]).toMatch(
+    new RegExp(`^${atEdge} of 10 traces (has|have) the largest signal at the edge of the window`),
+  );
 });

@@ -1,7 +1,12 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
 import { crossingsOf } from "@/lib/science/front/analyse-front";
-import { createCrossingScratch, loadSignal, orientSignal, poolUntilIncreasing } from "@/lib/science/front/crossing-kernel";
+import {
+  createCrossingScratch,
+  loadSignal,
+  orientSignal,
+  poolUntilIncreasing,
+} from "@/lib/science/front/crossing-kernel";
 import { DEFAULT_FRONT_RULE, type CrossingMethod } from "@/lib/science/front/front-rule";
 import { traceSetOf } from "./run-fixtures";
 
@@ -13,10 +18,17 @@ interface Trace {
 
 /** Traces on an uneven time grid with values on a lattice, so that ties are common. */
 const anyTrace: fc.Arbitrary<Trace> = fc
-  .array(fc.record({ gap: fc.integer({ min: 1, max: 40 }), value: fc.integer({ min: -20, max: 20 }), shots: fc.integer({ min: 1, max: 900 }) }), {
-    minLength: 1,
-    maxLength: 25,
-  })
+  .array(
+    fc.record({
+      gap: fc.integer({ min: 1, max: 40 }),
+      value: fc.integer({ min: -20, max: 20 }),
+      shots: fc.integer({ min: 1, max: 900 }),
+    }),
+    {
+      minLength: 1,
+      maxLength: 25,
+    },
+  )
   .map((samples) => {
     let time = 0;
     const times_us = samples.map(({ gap }) => (time += gap));
@@ -26,7 +38,12 @@ const anyTrace: fc.Arbitrary<Trace> = fc
 const methods: CrossingMethod[] = ["isotonic", "first"];
 
 function crossing(trace: Trace, method: CrossingMethod, hold = 2) {
-  const traces = traceSetOf({ times_us: trace.times_us, shotsPerTime: trace.shots, distances: [1], value: [trace.value] });
+  const traces = traceSetOf({
+    times_us: trace.times_us,
+    shotsPerTime: trace.shots,
+    distances: [1],
+    value: [trace.value],
+  });
   return crossingsOf(traces, { ...DEFAULT_FRONT_RULE, method, hold })[0];
 }
 
@@ -35,7 +52,7 @@ function pooledSlowly(trace: Trace, peak: number, sign: number): { time: number;
   let pools = trace.value.slice(0, peak + 1).map((value, k) => ({ members: [k], value: sign * value }));
   const mean = (members: number[], of: (k: number) => number) =>
     members.reduce((sum, k) => sum + trace.shots[k] * of(k), 0) / members.reduce((sum, k) => sum + trace.shots[k], 0);
-  for (let at = 0; at + 1 < pools.length; ) {
+  for (let at = 0; at + 1 < pools.length;) {
     if (pools[at].value < pools[at + 1].value - 1e-13) {
       at += 1;
       continue;
@@ -75,7 +92,11 @@ describe("crossing times of any trace", () => {
     fc.assert(
       fc.property(anyTrace, (trace) => {
         const value = [...new Set(trace.value.map(Math.abs))].sort((a, b) => a - b);
-        const rising = { value, times_us: trace.times_us.slice(0, value.length), shots: trace.shots.slice(0, value.length) };
+        const rising = {
+          value,
+          times_us: trace.times_us.slice(0, value.length),
+          shots: trace.shots.slice(0, value.length),
+        };
         expect(crossing(rising, "isotonic")).toEqual(crossing(rising, "first", 1));
       }),
     );
@@ -98,7 +119,13 @@ describe("pooled points", () => {
     fc.assert(
       fc.property(anyTrace, (trace) => {
         const scratch = createCrossingScratch(trace.times_us.length);
-        loadSignal(scratch, Float64Array.from(trace.times_us), Float64Array.from(trace.shots), Float64Array.from(trace.value), 0);
+        loadSignal(
+          scratch,
+          Float64Array.from(trace.times_us),
+          Float64Array.from(trace.shots),
+          Float64Array.from(trace.value),
+          0,
+        );
         const peak = orientSignal(scratch, false);
         const count = poolUntilIncreasing(scratch, peak);
         const slow = pooledSlowly(trace, peak, trace.value[peak] < 0 ? -1 : 1);

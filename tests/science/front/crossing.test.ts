@@ -15,7 +15,8 @@ describe.each(RUN_NAMES)("crossings of the simulated run %s, found independently
 
   test.each(["isotonic", "first"] as const)("method %s agrees to 1e-9 for every trace", (method) => {
     const crossings = crossingsOf(traces, { ...DEFAULT_FRONT_RULE, method });
-    const times = method === "isotonic" ? expected.deterministic.crossing_isotonic_us : expected.deterministic.crossing_first_us;
+    const times =
+      method === "isotonic" ? expected.deterministic.crossing_isotonic_us : expected.deterministic.crossing_first_us;
     expect(crossings.length).toBe(times.length);
     crossings.forEach((crossing, j) => {
       const time = times[j];
@@ -25,7 +26,9 @@ describe.each(RUN_NAMES)("crossings of the simulated run %s, found independently
   });
 
   test("every trace has the expected status", () => {
-    expect(crossingsOf(traces, DEFAULT_FRONT_RULE).map((crossing) => crossing.status)).toEqual(expected.statistical.status);
+    expect(crossingsOf(traces, DEFAULT_FRONT_RULE).map((crossing) => crossing.status)).toEqual(
+      expected.statistical.status,
+    );
   });
 });
 
@@ -137,7 +140,13 @@ describe("warnings", () => {
   test("level-above-0.2 only for a higher share of a maximum under 15 errors", () => {
     const errors = rise.map(() => 0.07);
     expect(crossingOf(rise, { level: 0.3 }, errors).warnings).toEqual(["level-above-0.2"]);
-    expect(crossingOf(rise, { level: 0.3 }, rise.map(() => 0.06)).warnings).toEqual([]);
+    expect(
+      crossingOf(
+        rise,
+        { level: 0.3 },
+        rise.map(() => 0.06),
+      ).warnings,
+    ).toEqual([]);
     expect(crossingOf(rise, { level: 0.2 }, errors).warnings).toEqual([]);
   });
 

@@ -35,7 +35,12 @@ describe.each(RUN_NAMES)("weighted fits to the points of %s, made independently 
     expectRelative(1 / fit.slope, expected.v_sites_per_us);
     expectRelative(fit.offsetError, expected.t0_error);
     expectRelative(fit.slopeError / fit.slope ** 2, expected.v_error);
-    const quality = fitQuality(points, points.distance.map((d) => fit.offset + fit.slope * d), 2, 0);
+    const quality = fitQuality(
+      points,
+      points.distance.map((d) => fit.offset + fit.slope * d),
+      2,
+      0,
+    );
     expect([quality.n, quality.dof]).toEqual([expected.n, expected.dof]);
     expectRelative(quality.chi2, expected.chi2);
     expectRelative(quality.pValue, expected.p_value);
@@ -65,7 +70,11 @@ describe("the power law in τ itself", () => {
   // NIST StRD, DanWood: y = b1 x^b2, certified values and standard deviations.
   const x = Float64Array.of(1.309, 1.471, 1.49, 1.565, 1.611, 1.68);
   const y = Float64Array.of(2.138, 3.421, 3.597, 4.34, 4.882, 5.66);
-  const fit = fitPowerLawInTime(x, y, x.map(() => 1));
+  const fit = fitPowerLawInTime(
+    x,
+    y,
+    x.map(() => 1),
+  );
 
   test("reproduces the certified parameters of NIST DanWood", () => {
     expect(fit.converged).toBe(true);
@@ -84,7 +93,10 @@ describe("the power law in τ itself", () => {
     const distance = Float64Array.of(1, 2, 3, 5, 8, 13);
     const time_us = distance.map((d) => (d / 0.07) ** 0.62);
     const softened_us = Float64Array.of(1, 3, 0.5, 2, 1, 4);
-    for (const exact of [fitPowerLaw(distance, time_us, softened_us), fitPowerLawInTime(distance, time_us, softened_us)]) {
+    for (const exact of [
+      fitPowerLaw(distance, time_us, softened_us),
+      fitPowerLawInTime(distance, time_us, softened_us),
+    ]) {
       expectRelative(exact.slope, 0.62, 1e-12);
       expectRelative(amplitudeOf(exact.offset, exact.slope), 0.07, 1e-11);
     }
@@ -116,7 +128,10 @@ describe("fit options and derived quantities", () => {
     const { linear, powerLaw } = expectedRun("xy-chain-12").statistical;
     const points = pointsOfRun(expectedRun("xy-chain-12"));
     const flat = fitQuality(points, points.time_us, 2, 0);
-    const comparison = compareFits({ ...flat, aicc: linear.aicc, bic: linear.bic }, { ...flat, aicc: powerLaw.aicc, bic: powerLaw.bic });
+    const comparison = compareFits(
+      { ...flat, aicc: linear.aicc, bic: linear.bic },
+      { ...flat, aicc: powerLaw.aicc, bic: powerLaw.bic },
+    );
     expect(comparison.deltaAicc).toBeCloseTo(17.551453549869773 - 36.326885568734106, 9);
     expect(comparison.deltaBic).toBeCloseTo(16.847244095466515 - 35.622676114330844, 9);
     expect(compareFits({ ...flat, aicc: null }, flat).deltaAicc).toBeNull();

@@ -30,11 +30,19 @@ function coneTraces(most: number, window: number) {
   const x = Array.from({ length: Math.round(window / FINEST_STEP) + 1 }, (_, k) => k * FINEST_STEP);
   const samples = x.map((at) => besselJ(most, at));
   const distances = Array.from({ length: most }, (_, n) => n + 1);
-  return traceSetOf({ times_us: x, distances, value: distances.map((n) => samples.map((values) => values[n] ** 2)), error: distances.map(() => x.map(() => 0)) });
+  return traceSetOf({
+    times_us: x,
+    distances,
+    value: distances.map((n) => samples.map((values) => values[n] ** 2)),
+    error: distances.map(() => x.map(() => 0)),
+  });
 }
 
 function timesOf(traces: ReturnType<typeof coneTraces>, method: CrossingMethod, level = 0.1): Float64Array {
-  return Float64Array.from(crossingsOf(traces, { ...DEFAULT_FRONT_RULE, method, level, hold: 1 }), ({ time_us }) => time_us);
+  return Float64Array.from(
+    crossingsOf(traces, { ...DEFAULT_FRONT_RULE, method, level, hold: 1 }),
+    ({ time_us }) => time_us,
+  );
 }
 
 /** γ of ln τ = γ ln d + …, every point with the same weight. */
@@ -43,8 +51,22 @@ function gammaOver(times: Float64Array, from: number, to: number) {
   const time = times.slice(from - 1, to);
   return {
     gamma: fitPowerLaw(distance, time, time).slope,
-    freeVelocity: 1 / fitLinearFront(distance, time, time.map(() => 1), false).slope,
-    originVelocity: 1 / fitLinearFront(distance, time, time.map(() => 1), true).slope,
+    freeVelocity:
+      1 /
+      fitLinearFront(
+        distance,
+        time,
+        time.map(() => 1),
+        false,
+      ).slope,
+    originVelocity:
+      1 /
+      fitLinearFront(
+        distance,
+        time,
+        time.map(() => 1),
+        true,
+      ).slope,
   };
 }
 
@@ -53,7 +75,15 @@ describe("the exactly straight cone |J_n(vt)|² of the nearest-neighbour chain",
   const times = timesOf(traces, "isotonic");
 
   test("first reaches 10 % of its maximum at the exact times of section 7 of the numeric checks", () => {
-    const exact: [number, number][] = [[1, 0.3745327981], [2, 1.1762345643], [3, 2.0521625161], [5, 3.8781566103], [10, 8.5962421847], [20, 18.2434151310], [40, 37.7984741530]];
+    const exact: [number, number][] = [
+      [1, 0.3745327981],
+      [2, 1.1762345643],
+      [3, 2.0521625161],
+      [5, 3.8781566103],
+      [10, 8.5962421847],
+      [20, 18.243415131],
+      [40, 37.798474153],
+    ];
     for (const [n, time] of exact) expect(times[n - 1]).toBeCloseTo(time, 5);
   });
 
@@ -81,7 +111,9 @@ describe("the exactly straight cone |J_n(vt)|² of the nearest-neighbour chain",
   test("seems faster than linear, β = 1.35 over 1–7, when the window ends at vt = 2, and says so", () => {
     const cut = coneTraces(7, 2);
     expect((1 / gammaOver(timesOf(cut, "isotonic"), 1, 7).gamma).toFixed(2)).toBe("1.35");
-    const atEdge = crossingsOf(cut, DEFAULT_FRONT_RULE).map(({ warnings }) => warnings.includes("maximum-at-window-edge"));
+    const atEdge = crossingsOf(cut, DEFAULT_FRONT_RULE).map(({ warnings }) =>
+      warnings.includes("maximum-at-window-edge"),
+    );
     expect(atEdge).toEqual([false, true, true, true, true, true, true]);
   });
 });
@@ -111,30 +143,33 @@ function goldenCrossings(name: string, sites: number) {
 // The tables take the largest signed C. At α = 3 one trace swings further below zero than above, and is left to the last test.
 const positiveFronts = Object.entries(goldenFronts).filter(([name]) => name !== "ising11_3.0");
 
-describe.each(positiveFronts)("the golden front of the exact quench %s, section 5 of the numeric checks", (name, golden) => {
-  const { times_us, distances, crossings } = goldenCrossings(name, 11);
-  const times = Float64Array.from(crossings, (crossing) => crossing.time_us);
+describe.each(positiveFronts)(
+  "the golden front of the exact quench %s, section 5 of the numeric checks",
+  (name, golden) => {
+    const { times_us, distances, crossings } = goldenCrossings(name, 11);
+    const times = Float64Array.from(crossings, (crossing) => crossing.time_us);
 
-  test("has the extracted times", () => {
-    crossings.forEach((crossing, j) => expect(crossing.time_us).toBeCloseTo(golden.t10[j], 9));
-  });
+    test("has the extracted times", () => {
+      crossings.forEach((crossing, j) => expect(crossing.time_us).toBeCloseTo(golden.t10[j], 9));
+    });
 
-  test("has its maxima at the tabulated grid times", () => {
-    crossings.forEach((crossing, j) => expect(times_us[crossing.peakTimeIndex]).toBeCloseTo(golden.tmax[j], 12));
-  });
+    test("has its maxima at the tabulated grid times", () => {
+      crossings.forEach((crossing, j) => expect(times_us[crossing.peakTimeIndex]).toBeCloseTo(golden.tmax[j], 12));
+    });
 
-  test("has the tabulated slope of ln t against ln r, and the straight lines", () => {
-    const distance = Float64Array.from(distances);
-    const power = fitPowerLaw(distance, times, times);
-    expect(power.slope).toBeCloseTo(golden.beta, 8);
-    expect(power.offset).toBeCloseTo(golden.lna, 8);
-    const equal = times.map(() => 1);
-    const line = fitLinearFront(distance, times, equal, false);
-    expect(line.slope).toBeCloseTo(golden.slope, 9);
-    expect(line.offset).toBeCloseTo(golden.icpt, 9);
-    expect(fitLinearFront(distance, times, equal, true).slope).toBeCloseTo(golden.origin, 9);
-  });
-});
+    test("has the tabulated slope of ln t against ln r, and the straight lines", () => {
+      const distance = Float64Array.from(distances);
+      const power = fitPowerLaw(distance, times, times);
+      expect(power.slope).toBeCloseTo(golden.beta, 8);
+      expect(power.offset).toBeCloseTo(golden.lna, 8);
+      const equal = times.map(() => 1);
+      const line = fitLinearFront(distance, times, equal, false);
+      expect(line.slope).toBeCloseTo(golden.slope, 9);
+      expect(line.offset).toBeCloseTo(golden.icpt, 9);
+      expect(fitLinearFront(distance, times, equal, true).slope).toBeCloseTo(golden.origin, 9);
+    });
+  },
+);
 
 test("at α = 3 the golden times hold but for distance 3, whose largest |C| is a negative swing", () => {
   const golden = goldenFronts["ising11_3.0"];

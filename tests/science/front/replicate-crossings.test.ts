@@ -12,14 +12,16 @@ const rule = (changes: Partial<FrontRule> = {}): FrontRule => ({ ...DEFAULT_FRON
 
 describe("crossings in replicates", () => {
   /** 1 to 140 replicates, so that the last block of the kernel is full, partial or the only one. */
-  const anySet = fc.record({ replicateCount: fc.integer({ min: 1, max: 140 }), seed: fc.integer({ min: 1, max: 1e6 }) }).map(({ replicateCount, seed }) => {
-    let state = seed;
-    const draw = () => (state = (state * 48271) % 2147483647) / 2147483647 - 0.4;
-    const traces = () => [0, 1, 2].map(() => Array.from({ length: 9 }, draw));
-    const times_us = Array.from({ length: 9 }, (_, k) => 3 * k + 1);
-    const replicates = Array.from({ length: replicateCount }, traces);
-    return { replicates, traces: traceSetOf({ times_us, distances: [1, 2, 3], value: traces(), replicates }) };
-  });
+  const anySet = fc
+    .record({ replicateCount: fc.integer({ min: 1, max: 140 }), seed: fc.integer({ min: 1, max: 1e6 }) })
+    .map(({ replicateCount, seed }) => {
+      let state = seed;
+      const draw = () => (state = (state * 48271) % 2147483647) / 2147483647 - 0.4;
+      const traces = () => [0, 1, 2].map(() => Array.from({ length: 9 }, draw));
+      const times_us = Array.from({ length: 9 }, (_, k) => 3 * k + 1);
+      const replicates = Array.from({ length: replicateCount }, traces);
+      return { replicates, traces: traceSetOf({ times_us, distances: [1, 2, 3], value: traces(), replicates }) };
+    });
 
   test("are those of each replicate taken as a trace of its own", () => {
     const rules = [rule(), rule({ method: "first", hold: 3 }), rule({ absolute: true, level: 0.5, method: "first" })];
@@ -27,7 +29,10 @@ describe("crossings in replicates", () => {
       fc.property(anySet, fc.constantFrom(...rules), ({ traces, replicates }, chosen) => {
         const tau = replicateCrossings(traces, chosen, new Float64Array(3));
         replicates.forEach((value, b) => {
-          const alone = crossingsOf(traceSetOf({ times_us: [...traces.times_us], distances: [1, 2, 3], value }), chosen);
+          const alone = crossingsOf(
+            traceSetOf({ times_us: [...traces.times_us], distances: [1, 2, 3], value }),
+            chosen,
+          );
           alone.forEach(({ time_us }, j) => expect(tau[j * traces.replicateCount + b]).toBe(time_us));
         });
       }),
@@ -36,7 +41,12 @@ describe("crossings in replicates", () => {
   });
 
   test("use the full data's level under the other rules", () => {
-    const traces = traceSetOf({ times_us: [1, 2, 3], distances: [1], value: [[0, 0.2, 1]], replicates: [[[0, 0.4, 1]], [[0, 0, 0.1]]] });
+    const traces = traceSetOf({
+      times_us: [1, 2, 3],
+      distances: [1],
+      value: [[0, 0.2, 1]],
+      replicates: [[[0, 0.4, 1]], [[0, 0, 0.1]]],
+    });
     expect([...replicateCrossings(traces, rule({ rule: "fixed-level" }), Float64Array.of(0.2))]).toEqual([1.5, NaN]);
   });
 
@@ -73,15 +83,25 @@ describe("fits in replicates", () => {
     error_us,
     softened_us: softenErrors(error_us),
   };
-  const straight: FrontFitter = (distance, time_us, softened_us) => fitLinearFront(distance, time_us, softened_us, false);
+  const straight: FrontFitter = (distance, time_us, softened_us) =>
+    fitLinearFront(distance, time_us, softened_us, false);
 
   test("leave a missing crossing out of that replicate's fit only, with the errors of the full data", () => {
     fc.assert(
       fc.property(
-        fc.array(fc.array(fc.oneof({ weight: 5, arbitrary: fc.double({ min: 1, max: 50, noNaN: true }) }, fc.constant(NaN)), { minLength: 5, maxLength: 5 }), { minLength: 1, maxLength: 6 }),
+        fc.array(
+          fc.array(fc.oneof({ weight: 5, arbitrary: fc.double({ min: 1, max: 50, noNaN: true }) }, fc.constant(NaN)), {
+            minLength: 5,
+            maxLength: 5,
+          }),
+          { minLength: 1, maxLength: 6 },
+        ),
         (replicates) => {
           const count = replicates.length;
-          const tau = Float64Array.from({ length: 5 * count }, (_, at) => replicates[at % count][Math.floor(at / count)]);
+          const tau = Float64Array.from(
+            { length: 5 * count },
+            (_, at) => replicates[at % count][Math.floor(at / count)],
+          );
           const fits = fitReplicates(points, tau, count, -Infinity, straight);
           replicates.forEach((times, b) => {
             const present = [0, 1, 2, 3].filter((p) => Number.isFinite(times[points.trace[p]]));
@@ -90,7 +110,11 @@ describe("fits in replicates", () => {
               return;
             }
             const pick = (of: (p: number) => number) => Float64Array.from(present, of);
-            const alone = straight(pick((p) => points.distance[p]), pick((p) => times[points.trace[p]]), pick((p) => points.softened_us[p]));
+            const alone = straight(
+              pick((p) => points.distance[p]),
+              pick((p) => times[points.trace[p]]),
+              pick((p) => points.softened_us[p]),
+            );
             expect([fits.offset[b], fits.slope[b]]).toEqual([alone.offset, alone.slope]);
           });
           expect(fits.fitted).toBe([...fits.slope].filter((slope) => !Number.isNaN(slope)).length);

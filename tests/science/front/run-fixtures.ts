@@ -19,7 +19,10 @@ export interface ExpectedRun {
     status: string[];
     crossing_us: (number | null)[];
     crossingError_us: (number | null)[];
-    linear: Record<"t0_us" | "v_sites_per_us" | "t0_error" | "v_error" | "n" | "chi2" | "dof" | "p_value" | "aicc" | "bic", number>;
+    linear: Record<
+      "t0_us" | "v_sites_per_us" | "t0_error" | "v_error" | "n" | "chi2" | "dof" | "p_value" | "aicc" | "bic",
+      number
+    >;
     powerLaw: Record<
       "gamma" | "gamma_error" | "beta" | "beta_error" | "a" | "n" | "chi2" | "dof" | "p_value" | "aicc" | "bic",
       number
