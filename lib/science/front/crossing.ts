@@ -43,7 +43,7 @@ export function findCrossing(
   loadSignal(scratch, traces.times_us, traces.shotsPerTime, traces.value, offset);
   const peak = orientSignal(scratch, rule.absolute);
   const peakTimeIndex = peak < 0 ? -1 : scratch.timeIndex[peak];
-  const maximum = peak < 0 ? NaN : scratch.signal[peak];
+  const maximum = peak < 0 ? NaN : Math.abs(scratch.signal[peak]);
   const peakError = peak < 0 ? NaN : traces.error[offset + peakTimeIndex];
   const level = levelOfTrace(traces, offset, peakTimeIndex, maximum, rule);
   const time_us = crossingTime_us(scratch, peak, level, rule);
