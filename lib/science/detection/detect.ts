@@ -1,16 +1,11 @@
 import { adviseCalibrationThreshold, calibrateSite, type CalibratedRates } from "@/lib/science/detection/calibration";
-import {
-  isFull,
-  refusalOf,
-  refused,
-  type DetectionInput,
-  type DetectionRefusal,
-} from "@/lib/science/detection/detection-input";
+import { isFull, refusalOf, type DetectionInput, type DetectionRefusal } from "@/lib/science/detection/detection-input";
 import {
   detectionWarning,
   type DetectionWarning,
   type DetectionWarningCode,
 } from "@/lib/science/detection/detection-warnings";
+import { largestBin, type SiteHistogram } from "@/lib/science/detection/histogram";
 import { mixtureErrorRates } from "@/lib/science/detection/mixture-error-rates";
 import { fitPoissonMixture } from "@/lib/science/detection/poisson-mixture";
 import {
@@ -52,9 +47,10 @@ export interface Detected {
 }
 
 /**
- * Returns thresholds, error rates and warnings of all sites, or why there are none. Thresholds: the given ones; else
- * advised by calibration shots or mixture; a site with no two usable components borrows the median of the other
- * sites. Rates: from calibration with methods `calibration` and, when there is one, `fixed`; else from the mixture.
+ * Returns thresholds, error rates and warnings of all sites, or why there are none.
+ * Thresholds: the given ones; else advised by calibration shots or mixture. A site without two usable components borrows
+ * the median of the other sites; where no site has them, θ lies above every count, so that noise is not read as spins.
+ * Rates: from calibration with method `calibration` and, when there is one, `fixed`; else from the mixture, if it works.
  */
 export function detect(input: DetectionInput): Detected | DetectionRefusal {
   const refusal = refusalOf(input);
@@ -64,12 +60,6 @@ export function detect(input: DetectionInput): Detected | DetectionRefusal {
     source === "mixture" ? fitPoissonMixture(histogram.frequencies) : null,
   );
   const thresholds = chooseThresholds(input, fits);
-  if (thresholds === null) {
-    return refused(
-      "method",
-      "No site shows two components, so the mixture gives no threshold; give one, or add calibration shots.",
-    );
-  }
   const sites = input.histograms.map((_, site) => detectSite(input, site, thresholds[site], fits[site]));
   return { kind: "detected", sites };
 }
@@ -81,26 +71,35 @@ function rateSource({ method, calibration, countKind }: DetectionInput): "calibr
 
 interface ChosenThreshold {
   threshold: number;
-  borrowed: boolean;
+  /** What stood in for the site's own counts, when they gave no threshold. */
+  standIn: "threshold-borrowed" | "threshold-above-all" | null;
 }
 
-function chooseThresholds(input: DetectionInput, fits: SiteFit[]): ChosenThreshold[] | null {
-  const { thresholds, histograms, calibration } = input;
+function chooseThresholds(input: DetectionInput, fits: SiteFit[]): ChosenThreshold[] {
+  const { method, thresholds, histograms, calibration } = input;
   if (thresholds !== null) {
-    return histograms.map((_, site) => ({
-      threshold: thresholds.length === 1 ? thresholds[0] : thresholds[site],
-      borrowed: false,
-    }));
+    return histograms.map((_, site) => ownThreshold(thresholds.length === 1 ? thresholds[0] : thresholds[site]));
   }
-  if (input.method === "calibration" && isFull(calibration)) {
-    return histograms.map((_, site) => ({ threshold: adviseCalibrationThreshold(calibration, site), borrowed: false }));
+  if (method === "calibration" && isFull(calibration)) {
+    return histograms.map((_, site) => ownThreshold(adviseCalibrationThreshold(calibration, site)));
   }
   const advised = fits.map((fit) => (isUsable(fit) ? advisePoissonThreshold(fit.dark, fit.bright) : null));
   const own = advised.filter((threshold) => threshold !== null);
-  if (own.length === 0) return null;
+  return advised.map((threshold, site) =>
+    threshold === null ? standIn(own, histograms[site]) : ownThreshold(threshold),
+  );
+}
+
+function ownThreshold(threshold: number): ChosenThreshold {
+  return { threshold, standIn: null };
+}
+
+function standIn(lenders: number[], histogram: SiteHistogram): ChosenThreshold {
+  if (lenders.length === 0) {
+    return { threshold: Math.max(0, largestBin(histogram)) + 0.5, standIn: "threshold-above-all" };
+  }
   // The median of an even number may lie between half-integers; half-integers are what is advised.
-  const lent = Math.floor(median(own)) + 0.5;
-  return advised.map((threshold) => ({ threshold: threshold ?? lent, borrowed: threshold === null }));
+  return { threshold: Math.floor(median(lenders)) + 0.5, standIn: "threshold-borrowed" };
 }
 
 function detectSite(input: DetectionInput, site: number, chosen: ChosenThreshold, fit: SiteFit): DetectedSite {
@@ -109,7 +108,7 @@ function detectSite(input: DetectionInput, site: number, chosen: ChosenThreshold
   const rates = ratesOf(input, site, threshold, fit);
   const codes: DetectionWarningCode[] = [
     ...fitWarnings(fit),
-    ...(chosen.borrowed ? (["threshold-borrowed"] as const) : []),
+    ...(chosen.standIn === null ? [] : [chosen.standIn]),
     ...rateWarnings(rates, source),
     ...readingWarnings(input.histograms[site], threshold, input.countKind === "whole" ? 0 : 1),
   ];

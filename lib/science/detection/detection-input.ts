@@ -54,8 +54,7 @@ export function refusalOf(input: DetectionInput): DetectionRefusal | null {
   return null;
 }
 
-/** Returns a refusal. */
-export function refused(where: DetectionRefusal["where"], message: string): DetectionRefusal {
+function refused(where: DetectionRefusal["where"], message: string): DetectionRefusal {
   return { kind: "refused", where, message };
 }
 

@@ -9,6 +9,7 @@ export type DetectionWarningCode =
   | "rare-component"
   | "leakage-unseen"
   | "threshold-borrowed"
+  | "threshold-above-all"
   | "rates-unknown"
   | "few-calibration-shots"
   | "always-dark"
@@ -36,6 +37,8 @@ const MESSAGES: Record<DetectionWarningCode, string> = {
     "A Poisson mixture does not see shots that change state while they are read: ε_d can be a factor of two too low at 3 % leakage.",
   "threshold-borrowed":
     "The site's own counts give no threshold; this one is the median of the other sites' thresholds.",
+  "threshold-above-all":
+    "No site shows two components, so this threshold lies above every count and the site reads dark throughout.",
   "rates-unknown": "No error rates are known for this site, so its readout cannot be corrected.",
   "few-calibration-shots": "There are fewer than 100 calibration shots of one kind, so the error rates are coarse.",
   "always-dark": "The site reads dark in every shot at this threshold.",

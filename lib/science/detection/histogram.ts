@@ -74,3 +74,9 @@ export function shotsInHistogram(histogram: SiteHistogram): number {
   for (const frequency of histogram.frequencies) shots += frequency;
   return shots;
 }
+
+/** Returns the lower edge of the highest bin that holds a shot; −1 without shots. */
+export function largestBin(histogram: SiteHistogram): number {
+  const last = histogram.frequencies.findLastIndex((frequency) => frequency > 0);
+  return last < 0 ? -1 : histogram.firstBin + last;
+}

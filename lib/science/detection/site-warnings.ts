@@ -1,6 +1,6 @@
 import type { CalibratedRates } from "@/lib/science/detection/calibration";
 import type { DetectionWarningCode } from "@/lib/science/detection/detection-warnings";
-import type { SiteHistogram } from "@/lib/science/detection/histogram";
+import { largestBin, shotsInHistogram, type SiteHistogram } from "@/lib/science/detection/histogram";
 import type { OneComponent, TwoComponents } from "@/lib/science/detection/poisson-mixture";
 import { advisePoissonThreshold, poissonErrorRates, type ErrorRates } from "@/lib/science/detection/threshold";
 
@@ -55,9 +55,9 @@ export function rateWarnings(
  * whole counts, 1 for fractional ones (a bin that the threshold cuts through tells nothing).
  */
 export function readingWarnings(histogram: SiteHistogram, threshold: number, binTop: 0 | 1): DetectionWarningCode[] {
-  const { firstBin, frequencies } = histogram;
-  const used = [...frequencies.keys()].filter((bin) => frequencies[bin] > 0);
-  if (used.length === 0) return [];
-  if (firstBin + used[used.length - 1] + binTop <= threshold) return ["always-dark"];
-  return firstBin + used[0] > threshold ? ["always-bright"] : [];
+  const least = histogram.firstBin + histogram.frequencies.findIndex((frequency) => frequency > 0);
+  const largest = largestBin(histogram);
+  if (shotsInHistogram(histogram) === 0) return [];
+  if (largest + binTop <= threshold) return ["always-dark"];
+  return least > threshold ? ["always-bright"] : [];
 }
