@@ -9,6 +9,8 @@ export const RANDOM_PURPOSES = {
   readoutErrors: 2,
   /** Simulated runs. */
   simulation: 3,
+  /** What completes a bootstrap replicate's byte draws to exactly M shots; index is the time k. */
+  bootstrapRepairs: 4,
 } as const;
 
 export type RandomPurpose = (typeof RANDOM_PURPOSES)[keyof typeof RANDOM_PURPOSES];
