@@ -24,11 +24,12 @@ export interface BootstrapKernel {
     b: number,
     first: number,
     end: number,
+    weights: number,
     emptyRow: number,
     list: number,
     scratch: number,
-  ): number;
-  sumPatterns(list: number, weights: number, sums: number): void;
+  ): void;
+  sumPatterns(list: number, sums: number): void;
   countJointly(
     sums: number,
     pairRows: number,

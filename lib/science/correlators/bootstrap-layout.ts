@@ -39,8 +39,6 @@ export interface BootstrapLayout {
   /** Bytes of a group pair's list of shots of one chunk. */
   listBytes: number;
   chunks: { first: number; end: number }[];
-  /** Offset of an all-zero row from `weights`. */
-  emptyRow: number;
   fineTable: number;
   scratch: number;
   sums: number;
@@ -51,6 +49,8 @@ export interface BootstrapLayout {
   words: number;
   nibbles: number;
   weights: number;
+  /** An all-zero row after the weights. */
+  emptyRow: number;
   factors: number;
   offsets: number;
   traces: number;
@@ -84,7 +84,8 @@ export function layOutBootstrap(shots: number, sites: number, replicates: number
   const largestTile = Math.floor(TILE_BYTES / Math.max(PAIR_ROWS * rowBytes, listBytes * chunks.length));
   const groupPairsPerTile = Math.min((groups * (groups - 1)) / 2, Math.max(groups, largestTile));
   const drawnRows = Math.ceil(shots / 4) * 4;
-  let bytes = 0;
+  // Offset 0 would read as "none".
+  let bytes = 64;
   const reserve = (size: number) => {
     const at = bytes;
     bytes = Math.ceil((bytes + size) / 64) * 64;
@@ -101,9 +102,8 @@ export function layOutBootstrap(shots: number, sites: number, replicates: number
     valueBytes,
     listBytes,
     chunks,
-    emptyRow: drawnRows * BLOCK_REPLICATES,
     fineTable: reserve(64),
-    scratch: reserve(4096),
+    scratch: reserve(11264),
     sums: reserve(256 * 64),
     bins: reserve(padded),
     binSizes: reserve(1024),
@@ -111,7 +111,8 @@ export function layOutBootstrap(shots: number, sites: number, replicates: number
     values: reserve(valueBytes),
     words: reserve(groups * GROUP_SITES * wordsPerSite(shots) * 4),
     nibbles: reserve(groups * shots),
-    weights: reserve((drawnRows + 1) * BLOCK_REPLICATES),
+    weights: reserve(drawnRows * BLOCK_REPLICATES),
+    emptyRow: reserve(BLOCK_REPLICATES),
     factors: reserve(sites * valueBytes),
     offsets: reserve(sites * valueBytes),
     traces: reserve(traces * valueBytes),

@@ -59,7 +59,7 @@ export function prepareJointBootstrap(
   const readings = new Uint32Array(memory, layout.words, layout.groups * GROUP_SITES * wordsPerSite(spins.shots));
   readings.fill(0).set(spins.words);
   new Uint32Array(memory, layout.fineTable, 16).set(fineDrawLimits());
-  new Uint8Array(memory, layout.weights + layout.emptyRow, 32).fill(0);
+  new Uint8Array(memory, layout.emptyRow, 32).fill(0);
   new Float64Array(memory, layout.traces, (traceCount * layout.valueBytes) / 8).fill(0);
   writeReadout(new Float64Array(memory), layout, readout);
   for (let g = 0; g < layout.groups; g++) {
@@ -128,7 +128,8 @@ function listShots({ kernel, layout }: JointBootstrap, tile: readonly GroupPair[
       const readingsA = layout.nibbles + a * layout.shots;
       const readingsB = layout.nibbles + b * layout.shots;
       const list = listAt(layout, slot, chunk);
-      kernel.listPatterns(readingsA, readingsB, first, end, layout.emptyRow, list, layout.scratch);
+      const { weights, emptyRow, scratch } = layout;
+      kernel.listPatterns(readingsA, readingsB, first, end, weights, emptyRow, list, scratch);
     });
   });
 }
@@ -138,7 +139,7 @@ function countGroupPair(run: JointBootstrap, pair: GroupPair, slot: number, bloc
   const pairRows = layout.pairRows + slot * PAIR_ROWS * layout.rowBytes;
   const ownRows = pair.own ? layout.ownRows + pair.b * OWN_ROWS * layout.rowBytes : 0;
   for (let chunk = 0; chunk < layout.chunks.length; chunk++) {
-    kernel.sumPatterns(listAt(layout, slot, chunk), layout.weights, layout.sums);
+    kernel.sumPatterns(listAt(layout, slot, chunk), layout.sums);
     const keep = chunk === 0 ? 0 : -1;
     kernel.countJointly(layout.sums, pairRows, ownRows, layout.rowBytes, block, keep, layout.scratch);
   }

@@ -31,12 +31,17 @@ export function packSpins(
   const limits = counts instanceof Float32Array ? Float32Array.from(thresholds) : thresholds;
   const stride = wordsPerSite(shots);
   const words = new Uint32Array(sites * stride);
-  const down = brightIs === "down" ? 1 : 0;
-  for (let i = 0; i < sites; i++) {
-    const limit = limits[i];
-    for (let s = 0, at = i; s < shots; s++, at += sites) {
-      const bright = counts[at] > limit ? 1 : 0;
-      words[i * stride + (s >>> 5)] |= (bright ^ down) << (s & 31);
+  const whenBright = brightIs === "up" ? 1 : 0;
+  for (let w = 0; w < stride; w++) {
+    const first = w * 32;
+    const end = Math.min(32, shots - first);
+    for (let i = 0; i < sites; i++) {
+      const limit = limits[i];
+      let word = 0;
+      for (let bit = 0, at = first * sites + i; bit < end; bit++, at += sites) {
+        word |= (counts[at] > limit ? whenBright : 1 - whenBright) << bit;
+      }
+      words[i * stride + w] = word;
     }
   }
   return { shots, sites, words };

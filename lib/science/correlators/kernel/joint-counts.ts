@@ -7,8 +7,8 @@
 /** Bytes of one pattern's 32 sums, 16 bits each. */
 const SUMS: usize = 64;
 
-/** Sums the rows of `weights` [shot][32] over each pattern of `list` into `sums` [pattern][32], u16. */
-export function sumPatterns(list: usize, weights: usize, sums: usize): void {
+/** Sums the rows [32] named by `list` over each of its patterns into `sums` [pattern][32], u16. */
+export function sumPatterns(list: usize, sums: usize): void {
   let at = list + 1024;
   for (let entry = list; entry < list + 1024; entry += 4) {
     const head = load<u32>(entry);
@@ -17,24 +17,28 @@ export function sumPatterns(list: usize, weights: usize, sums: usize): void {
     let b = i16x8.splat(0);
     let c = i16x8.splat(0);
     let d = i16x8.splat(0);
-    while (quads >= 2) {
-      const left = i8x16.add(quad(at, weights), quad(at + 16, weights));
-      const right = i8x16.add(quad(at, weights + 16), quad(at + 16, weights + 16));
-      a = i16x8.add(a, i16x8.extend_low_i8x16_u(left));
-      b = i16x8.add(b, i16x8.extend_high_i8x16_u(left));
-      c = i16x8.add(c, i16x8.extend_low_i8x16_u(right));
-      d = i16x8.add(d, i16x8.extend_high_i8x16_u(right));
-      at += 32;
-      quads -= 2;
-    }
-    if (quads) {
-      const left = quad(at, weights);
-      const right = quad(at, weights + 16);
-      a = i16x8.add(a, i16x8.extend_low_i8x16_u(left));
-      b = i16x8.add(b, i16x8.extend_high_i8x16_u(left));
-      c = i16x8.add(c, i16x8.extend_low_i8x16_u(right));
-      d = i16x8.add(d, i16x8.extend_high_i8x16_u(right));
+    while (quads) {
+      let p0 = usize(load<u32>(at));
+      let p1 = usize(load<u32>(at, 4));
+      let p2 = usize(load<u32>(at, 8));
+      let p3 = usize(load<u32>(at, 12));
+      let left = sum4Bytes(v128.load(p0), v128.load(p1), v128.load(p2), v128.load(p3));
+      let right = sum4Bytes(v128.load(p0, 16), v128.load(p1, 16), v128.load(p2, 16), v128.load(p3, 16));
       at += 16;
+      if (--quads) {
+        p0 = usize(load<u32>(at));
+        p1 = usize(load<u32>(at, 4));
+        p2 = usize(load<u32>(at, 8));
+        p3 = usize(load<u32>(at, 12));
+        left = i8x16.add(left, sum4Bytes(v128.load(p0), v128.load(p1), v128.load(p2), v128.load(p3)));
+        right = i8x16.add(right, sum4Bytes(v128.load(p0, 16), v128.load(p1, 16), v128.load(p2, 16), v128.load(p3, 16)));
+        at += 16;
+        quads--;
+      }
+      a = i16x8.add(a, i16x8.extend_low_i8x16_u(left));
+      b = i16x8.add(b, i16x8.extend_high_i8x16_u(left));
+      c = i16x8.add(c, i16x8.extend_low_i8x16_u(right));
+      d = i16x8.add(d, i16x8.extend_high_i8x16_u(right));
     }
     const out = sums + usize(head & 255) * SUMS;
     v128.store(out, a);
@@ -46,11 +50,8 @@ export function sumPatterns(list: usize, weights: usize, sums: usize): void {
 
 // @ts-ignore: decorator
 @inline
-function quad(at: usize, weights: usize): v128 {
-  return i8x16.add(
-    i8x16.add(v128.load(weights + load<u32>(at)), v128.load(weights + load<u32>(at, 4))),
-    i8x16.add(v128.load(weights + load<u32>(at, 8)), v128.load(weights + load<u32>(at, 12))),
-  );
+function sum4Bytes(a: v128, b: v128, c: v128, d: v128): v128 {
+  return i8x16.add(i8x16.add(a, b), i8x16.add(c, d));
 }
 
 /**

@@ -15,10 +15,14 @@ const LAST_3: i8 = 122;
 const SURE: i8 = 125;
 /** Eight rows are summed in bytes elsewhere, so no multiplicity may pass 31; that has a chance below 1e-30 a draw. */
 const LARGEST: u8 = 31;
+/** Shots drawn before their unsure bytes are drawn again; the list of those then stays in the nearest cache. */
+const STRIP: u32 = 64;
+const TOTALS: usize = 2560;
+const UNSURE: usize = 2816;
 
 /**
- * Writes the multiplicities of replicates 32 · block … 32 · block + 31 to `weights` [shot][32], bytes. `fineTable`
- * holds 16 limits of the finer draw; `scratch` 32 · 80 + 256 bytes.
+ * Writes the multiplicities of replicates 32 · block … 32 · block + 31 to `weights` [shot][32], bytes, with room for a
+ * multiple of four shots. `fineTable` holds the 16 limits of the finer draw; `scratch` 11 264 bytes.
  */
 export function drawMultiplicities(
   weights: usize, shots: u32, block: u32, time: u32, purpose: u32, repairPurpose: u32, key0: u32, key1: u32,
@@ -32,42 +36,74 @@ export function drawMultiplicities(
   const leftLow = secondRoundLow(leftFactor);
   const rightHigh = secondRoundHigh(rightFactor);
   const rightLow = secondRoundLow(rightFactor);
-  for (let s: u32 = 0; s < shots; s += 4) {
-    const rows = weights + usize(s) * ROW;
-    philoxAcrossLanes(leftHigh, leftLow, s >> 2, time, purpose, key0, key1, rows, ROW);
-    philoxAcrossLanes(rightHigh, rightLow, s >> 2, time, purpose, key0, key1, rows + 16, ROW);
-    const end = rows + usize(min<u32>(4, shots - s)) * ROW;
-    let unsure = i8x16.splat(0);
-    for (let row = rows; row < end; row += 16) unsure = v128.or(unsure, i8x16.gt_s(v128.load(row), i8x16.splat(SURE)));
-    if (v128.any_true(unsure)) convertWithCare(rows, end, fineTable);
-    else for (let row = rows; row < end; row += 16) v128.store(row, fromBytes(v128.load(row)));
+  const unsure = scratch + UNSURE;
+  for (let strip: u32 = 0; strip < shots; strip += STRIP) {
+    const end = min(strip + STRIP, shots);
+    let last = unsure;
+    for (let s = strip; s < end; s += 4) {
+      const rows = weights + usize(s) * ROW;
+      philoxAcrossLanes(leftHigh, leftLow, s >> 2, time, purpose, key0, key1, rows, ROW);
+      philoxAcrossLanes(rightHigh, rightLow, s >> 2, time, purpose, key0, key1, rows + 16, ROW);
+      last = listUnsure(convertTwoRows(rows), rows, last);
+      last = listUnsure(convertTwoRows(rows + 2 * ROW), rows + 2 * ROW, last);
+    }
+    drawFiner(unsure, last, weights, weights + usize(shots) * ROW, fineTable);
   }
-  completeBlock(weights, shots, scratch + 32 * 80);
+  completeBlock(weights, shots, scratch + TOTALS);
+}
+
+/** Turns 64 random bytes into multiplicities; returns a bit for each that is not sure. */
+// @ts-ignore: decorator
+@inline
+function convertTwoRows(rows: usize): u64 {
+  const low = u64(convert(rows)) | (u64(convert(rows + 16)) << 16);
+  return low | (u64(convert(rows + 32)) << 32) | (u64(convert(rows + 48)) << 48);
 }
 
 // @ts-ignore: decorator
 @inline
-function fromBytes(bytes: v128): v128 {
+function convert(at: usize): u32 {
+  const bytes = v128.load(at);
   const upTo2 = i8x16.add(
     i8x16.add(i8x16.gt_s(bytes, i8x16.splat(LAST_0)), i8x16.gt_s(bytes, i8x16.splat(LAST_1))),
     i8x16.gt_s(bytes, i8x16.splat(LAST_2)),
   );
-  return i8x16.sub(i8x16.splat(0), i8x16.add(upTo2, i8x16.gt_s(bytes, i8x16.splat(LAST_3))));
+  v128.store(at, i8x16.neg(i8x16.add(upTo2, i8x16.gt_s(bytes, i8x16.splat(LAST_3)))));
+  return i8x16.bitmask(i8x16.gt_s(bytes, i8x16.splat(SURE)));
 }
 
-function convertWithCare(rows: usize, end: usize, fineTable: usize): void {
-  for (let row = rows; row < end; row += 16) {
-    const bytes = v128.load(row);
-    let unsure: u32 = i8x16.bitmask(i8x16.gt_s(bytes, i8x16.splat(SURE)));
-    v128.store(row, fromBytes(bytes));
-    while (unsure) {
-      const lane = ctz(unsure);
-      unsure &= unsure - 1;
-      const word = nextWord(u32((row - rows) & 16) + lane);
-      let value: u8 = 0;
-      while (value < 15 && word >= load<u32>(fineTable + (usize(value) << 2))) value++;
-      store<u8>(row + lane, value);
-    }
+/**
+ * Appends the places of the set bits, of which two are written in any case: without a branch that depends on chance,
+ * but for the one in a hundred that has more.
+ */
+// @ts-ignore: decorator
+@inline
+function listUnsure(bits: u64, rows: usize, list: usize): usize {
+  const end = list + (usize(popcnt(bits)) << 2);
+  store<u32>(list, u32(rows) + u32(ctz(bits)));
+  bits &= bits - 1;
+  store<u32>(list, u32(rows) + u32(ctz(bits)), 4);
+  bits &= bits - 1;
+  for (let at = list + 8; bits; at += 4) {
+    store<u32>(at, u32(rows) + u32(ctz(bits)));
+    bits &= bits - 1;
+  }
+  return end;
+}
+
+function drawFiner(list: usize, end: usize, weights: usize, weightsEnd: usize, fineTable: usize): void {
+  const limits0 = v128.load(fineTable);
+  const limits1 = v128.load(fineTable, 16);
+  const limits2 = v128.load(fineTable, 32);
+  const limits3 = v128.load(fineTable, 48);
+  for (let at = list; at < end; at += 4) {
+    const cell = usize(load<u32>(at));
+    if (cell >= weightsEnd) break;
+    const word = i32x4.splat(nextWord(u32(cell - weights) & 31));
+    const low = i16x8.narrow_i32x4_s(i32x4.ge_u(word, limits0), i32x4.ge_u(word, limits1));
+    const high = i16x8.narrow_i32x4_s(i32x4.ge_u(word, limits2), i32x4.ge_u(word, limits3));
+    const passed = popcnt(i8x16.bitmask(i8x16.narrow_i16x8_s(low, high)));
+    store<u8>(cell, u8(min<u32>(passed, 15)));
   }
 }
 

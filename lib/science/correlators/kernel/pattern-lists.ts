@@ -19,13 +19,13 @@ export function readGroup(words: usize, wordsPerSite: u32, shots: u32, nibbles: 
 }
 
 /**
- * Writes the list of shots first … end − 1 to `list`: 256 u32 `pattern | quads << 8`, then the rows' byte offsets in
- * the same order, each pattern filled up to whole quads with `emptyRow`. A pattern is a + 16 b for the readings a of
- * the first group and b of the second. `scratch` holds 768 u32. Returns the bytes written.
+ * Writes the list of shots first … end − 1 to `list`: 256 u32 `pattern | quads << 8`, then where the shots' rows in
+ * `weights` lie, in the same order, each pattern filled up to whole quads with `emptyRow`. A pattern is a + 16 b for
+ * the readings a of the first group and b of the second. `scratch` holds 768 u32.
  */
 export function listPatterns(
-  a: usize, b: usize, first: u32, end: u32, emptyRow: u32, list: usize, scratch: usize,
-): usize {
+  a: usize, b: usize, first: u32, end: u32, weights: usize, emptyRow: usize, list: usize, scratch: usize,
+): void {
   const counts = scratch;
   const places = scratch + 1024;
   memory.fill(counts, 0, 1024);
@@ -41,16 +41,15 @@ export function listPatterns(
     const quads = usize(entry >> 8);
     store<u32>(places + pattern, u32(place));
     const next = place + (quads << 4);
-    for (let gap = place + (usize(load<u32>(counts + pattern)) << 2); gap < next; gap += 4) store<u32>(gap, emptyRow);
+    for (let gap = place + (usize(load<u32>(counts + pattern)) << 2); gap < next; gap += 4) store<u32>(gap, u32(emptyRow));
     place = next;
   }
   for (let s = first; s < end; s++) {
     const slot = places + (usize(patternOf(a, b, s)) << 2);
     const at = load<u32>(slot);
-    store<u32>(at, s << 5);
+    store<u32>(at, u32(weights) + (s << 5));
     store<u32>(slot, at + 4);
   }
-  return place - list;
 }
 
 // @ts-ignore: decorator
