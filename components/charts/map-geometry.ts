@@ -58,13 +58,16 @@ export function timeBorders(times: number[]): number[] {
   return [Math.max(0, times[0] - (inner[0] - times[0])), ...inner, times[last] + (times[last] - inner[last - 1])];
 }
 
+const QUIET_STEPS = [0.1, 0.12, 0.15, 0.2, 0.25, 0.3, 0.4, 0.5, 0.6, 0.8, 1];
+
 /** Returns the largest |value| of a map, rounded up to a quiet number, so that the colour scale is symmetric about zero. */
 export function colourLimit(rows: MapRow[]): number {
   let largest = 0;
   for (const row of rows) for (const value of row.values ?? []) largest = Math.max(largest, Math.abs(value ?? 0));
   if (largest === 0) return 1;
-  const step = 10 ** Math.floor(Math.log10(largest));
-  return Math.min(1.5, Math.ceil((largest / step) * 4) / 4 * step);
+  const decade = 10 ** (Math.floor(Math.log10(largest)) + 1);
+  const step = QUIET_STEPS.find((candidate) => largest <= candidate * decade * (1 + 1e-9)) ?? 1;
+  return Number((step * decade).toPrecision(3));
 }
 
 /**

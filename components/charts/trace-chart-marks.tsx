@@ -24,6 +24,15 @@ export interface TraceChartProps {
   labelled?: boolean;
 }
 
+/** Beyond this many, bands would hide each other. */
+const MOST_BANDS = 4;
+const LABEL_GAP_PX = 10;
+
+/** Traces fade with their place in the list, so that near and far sites can be told apart. */
+function lineOpacity(q: number, lines: number): number {
+  return lines === 1 ? 1 : 1 - (0.72 * q) / (lines - 1);
+}
+
 /** Returns scales and area of a trace chart; all lines share one time axis. */
 export function traceGeometry(lines: TraceLine[], size: ChartSize, labelled = false) {
   const area = plotArea(size, { left: 44, right: labelled ? 64 : 14, top: 26, bottom: 40 });
@@ -49,18 +58,18 @@ export function TraceChartMarks({ lines, size, theme, preview = false, labelled 
       <AxisLeft scale={correlator} area={area} label="connected correlator C" theme={theme} />
       <AxisBottom scale={time} area={area} label="evolution time (µs)" theme={theme} />
       <line x1={area.left} x2={area.right} y1={round(correlator(0))} y2={round(correlator(0))} stroke={theme.hairline} />
-      {lines.map((line) => (
-        <g key={line.label} opacity={lines.length > 1 ? 0.9 : 1}>
-          <path d={bandPath(line, time, correlator)} fill={theme.accent} opacity={0.18} />
+      {lines.map((line, q) => (
+        <g key={line.label} opacity={lineOpacity(q, lines.length)}>
+          {lines.length <= MOST_BANDS && <path d={bandPath(line, time, correlator)} fill={theme.accent} opacity={0.18} />}
           <path d={valuePath(line, time, correlator)} fill="none" stroke={theme.accent} strokeWidth={1.6} strokeDasharray={preview ? "5 4" : undefined} />
           {lines.length === 1 &&
             line.value.map((value, k) =>
               value === null ? null : <circle key={line.times_us[k]} cx={round(time(line.times_us[k]))} cy={round(correlator(value))} r={2} fill={theme.accent} />,
             )}
-          {line.crossing && <CrossingMark line={line} geometry={{ area, time, correlator }} theme={theme} />}
-          {labelled && <EndLabel line={line} geometry={{ area, time, correlator }} theme={theme} />}
+          {lines.length === 1 && line.crossing && <CrossingMark line={line} geometry={{ area, time, correlator }} theme={theme} />}
         </g>
       ))}
+      {labelled && <EndLabels lines={lines} geometry={{ area, time, correlator }} theme={theme} />}
     </>
   );
 }
@@ -101,12 +110,22 @@ function CrossingMark({ line, geometry, theme }: { line: TraceLine; geometry: Ge
   );
 }
 
-function EndLabel({ line, geometry, theme }: { line: TraceLine; geometry: Geometry; theme: ChartTheme }) {
-  const last = line.value.findLastIndex((value) => value !== null);
-  if (last < 0) return null;
+/** Direct labels at the right end, moved apart where they would overlap. */
+function EndLabels({ lines, geometry, theme }: { lines: TraceLine[]; geometry: Geometry; theme: ChartTheme }) {
+  const wanted = lines
+    .map((line) => ({ label: line.label, y: geometry.correlator(line.value.findLast((value) => value !== null) ?? 0) }))
+    .sort((first, second) => first.y - second.y);
+  const gap = Math.min(LABEL_GAP_PX, geometry.area.height / Math.max(1, wanted.length));
+  let lowest = -Infinity;
+  const placed = wanted.map(({ label, y }) => ({ label, y: (lowest = Math.max(y, lowest + gap)) }));
+  const over = Math.max(0, lowest - geometry.area.bottom);
   return (
-    <text x={geometry.area.right + 4} y={round(geometry.correlator(line.value[last] ?? 0))} dy="0.34em" fontSize={10} fill={theme.muted}>
-      {line.label}
-    </text>
+    <g fontSize={Math.min(10, gap + 1)} fill={theme.muted}>
+      {placed.map(({ label, y }) => (
+        <text key={label} x={geometry.area.right + 4} y={round(y - over)} dy="0.34em">
+          {label}
+        </text>
+      ))}
+    </g>
   );
 }
