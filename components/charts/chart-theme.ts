@@ -1,8 +1,9 @@
 import type { ThemeName } from "@/components/shell/theme-choice";
+import type { MapGround } from "./diverging-colours";
 
 /** Colours and font of a chart. On screen they are CSS variables; in files they are written out. */
 export interface ChartTheme {
-  name: ThemeName;
+  ground: MapGround;
   ink: string;
   muted: string;
   hairline: string;
@@ -21,7 +22,7 @@ const FONT = "Source Sans 3, Source Sans Pro, Seravek, Ubuntu, Calibri, sans-ser
 /** Returns the theme for charts on a page: it follows the page's own theme. */
 export function screenTheme(name: ThemeName): ChartTheme {
   return {
-    name,
+    ground: name,
     ink: "var(--ink)",
     muted: "var(--muted)",
     hairline: "var(--hairline)",
@@ -38,7 +39,7 @@ export function screenTheme(name: ThemeName): ChartTheme {
 /** Themes for files: the same colours as on the page, except that paper figures have a white ground. */
 export const FILE_THEMES: Record<ThemeName, ChartTheme> = {
   paper: {
-    name: "paper",
+    ground: "white",
     ink: "#1b2a4a",
     muted: "#566079",
     hairline: "#d9d4c8",
@@ -51,7 +52,7 @@ export const FILE_THEMES: Record<ThemeName, ChartTheme> = {
     font: FONT,
   },
   night: {
-    name: "night",
+    ground: "night",
     ink: "#ece4d2",
     muted: "#a3aec6",
     hairline: "#2c3854",

@@ -44,7 +44,7 @@ function MapCells({ data, geometry, theme, limit }: { data: MapData; geometry: M
             y={round(geometry.rowMiddle(r) - geometry.rowHeight / 2)}
             width={round(geometry.columnEdges[k + 1] - geometry.columnEdges[k])}
             height={round(geometry.rowHeight)}
-            fill={divergingColour(theme.name, value, limit) ?? "none"}
+            fill={divergingColour(theme.ground, value, limit) ?? "none"}
           />
         )),
       )}
@@ -84,7 +84,7 @@ function ColourBar({ geometry, theme, limit }: { geometry: MapGeometry; theme: C
     <g fontSize={12} fill={theme.muted}>
       <g shapeRendering="crispEdges">
         {Array.from({ length: BAR_STEPS }, (_, q) => (
-          <rect key={q} x={x} y={round(area.bottom - (q + 1) * step)} width={9} height={round(step + 0.5)} fill={divergingColour(theme.name, level(q), limit) ?? "none"} />
+          <rect key={q} x={x} y={round(area.bottom - (q + 1) * step)} width={9} height={round(step + 0.5)} fill={divergingColour(theme.ground, level(q), limit) ?? "none"} />
         ))}
       </g>
       <rect x={x} y={area.top} width={9} height={area.height} fill="none" stroke={theme.rule} strokeWidth={0.75} />
