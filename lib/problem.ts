@@ -27,7 +27,7 @@ export interface Problem {
   title: string;
   detail: string;
   errors: ProblemPlace[];
-  /** Seconds after which another try makes sense; only with `too-many-requests`. */
+  /** Seconds after which another try makes sense. */
   retryAfter_s?: number;
 }
 
