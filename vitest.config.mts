@@ -2,7 +2,7 @@ import { fileURLToPath } from "node:url";
 import { defineConfig } from "vitest/config";
 
 const alias = {
-  "server-only": fileURLToPath(new URL("./tests/server-only-stand-in.ts", import.meta.url)),
+  "server-only": fileURLToPath(new URL("./scripts/server-only-stand-in.mjs", import.meta.url)),
   "@": fileURLToPath(new URL("./", import.meta.url)).replace(/\/$/, ""),
 };
 

@@ -112,20 +112,24 @@ function CrossingMark({ line, geometry, theme }: { line: TraceLine; geometry: Ge
 
 /** Direct labels at the right end, moved apart where they would overlap. */
 function EndLabels({ lines, geometry, theme }: { lines: TraceLine[]; geometry: Geometry; theme: ChartTheme }) {
-  const wanted = lines
-    .map((line) => ({ label: line.label, y: geometry.correlator(line.value.findLast((value) => value !== null) ?? 0) }))
-    .sort((first, second) => first.y - second.y);
-  const gap = Math.min(LABEL_GAP_PX, geometry.area.height / Math.max(1, wanted.length));
-  let lowest = -Infinity;
-  const placed = wanted.map(({ label, y }) => ({ label, y: (lowest = Math.max(y, lowest + gap)) }));
-  const over = Math.max(0, lowest - geometry.area.bottom);
+  const gap = Math.min(LABEL_GAP_PX, geometry.area.height / Math.max(1, lines.length));
   return (
     <g fontSize={Math.min(10, gap + 1)} fill={theme.muted}>
-      {placed.map(({ label, y }) => (
-        <text key={label} x={geometry.area.right + 4} y={round(y - over)} dy="0.34em">
+      {placeLabels(lines, geometry, gap).map(({ label, y }) => (
+        <text key={label} x={geometry.area.right + 4} y={round(y)} dy="0.34em">
           {label}
         </text>
       ))}
     </g>
   );
+}
+
+/** Each label stands at its line's end, at least `gap` below the one above; all move up when the last would leave the plot. */
+function placeLabels(lines: TraceLine[], geometry: Geometry, gap: number): { label: string; y: number }[] {
+  const labels = lines
+    .map((line) => ({ label: line.label, y: geometry.correlator(line.value.findLast((value) => value !== null) ?? 0) }))
+    .sort((first, second) => first.y - second.y);
+  for (let q = 1; q < labels.length; q++) labels[q].y = Math.max(labels[q].y, labels[q - 1].y + gap);
+  const over = Math.max(0, (labels[labels.length - 1]?.y ?? 0) - geometry.area.bottom);
+  return labels.map(({ label, y }) => ({ label, y: y - over }));
 }

@@ -1,0 +1,27 @@
+import { createServer } from "node:http";
+import next from "next";
+
+const dev = process.env.NODE_ENV !== "production";
+const hostname = process.env.HOST || "127.0.0.1";
+const port = Number(process.env.PORT || 3000);
+
+const app = next({ dev, hostname, port });
+const handle = app.getRequestHandler();
+await app.prepare();
+
+const server = createServer((request, response) => void handle(request, response));
+// An upload may take hours on a slow line; the stock limit of five minutes would cut it.
+server.requestTimeout = 0;
+server.keepAliveTimeout = 65_000;
+server.on("error", (error) => {
+  console.error(error.code === "EADDRINUSE" ? `Port ${port} on ${hostname} is taken; set PORT to another.` : error.message);
+  process.exit(1);
+});
+server.listen(port, hostname);
+
+function end() {
+  server.closeAllConnections();
+  server.close(() => process.exit(0));
+}
+process.on("SIGTERM", end);
+process.on("disconnect", end);

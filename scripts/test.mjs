@@ -1,0 +1,67 @@
+import { spawn } from "node:child_process";
+import { mkdtempSync, rmSync } from "node:fs";
+import os from "node:os";
+import path from "node:path";
+import { ensureBuild } from "./start/build.mjs";
+import { freePort, startDatabase } from "./start/database.mjs";
+import { ensureDebianPackages, ensureNpmPackages } from "./start/packages.mjs";
+import { prepareDatabase, startPart, stopPart, untilHealthy } from "./start/parts.mjs";
+import { ROOT } from "./start/settings.mjs";
+
+const dataDirectory = mkdtempSync(path.join(os.tmpdir(), "strandline-test-"));
+const running = { database: null, web: null, worker: null, tests: null };
+
+/** Runs all tests against a throw-away database with the demo in it, a real web server and a real worker. */
+async function test() {
+  ensureNpmPackages();
+  ensureDebianPackages([
+    { program: "mariadbd", name: "mariadb-server" },
+    { program: "chromium", name: "chromium" },
+  ]);
+  ensureBuild();
+  running.database = await startDatabase(dataDirectory, "throw-away");
+  const port = await freePort();
+  const address = `http://127.0.0.1:${port}`;
+  const environment = {
+    NODE_ENV: "production",
+    DATABASE_URL: running.database.url,
+    STRANDLINE_SESSION_SECRET: "a secret for tests that guards nothing at all",
+    STRANDLINE_DEMO: "1",
+    STRANDLINE_DEMO_PASSWORD: "low-tide-demo",
+    HOST: "127.0.0.1",
+    PORT: String(port),
+    PUBLIC_URL: address,
+  };
+  prepareDatabase(environment);
+  running.web = startPart({ name: "web server", file: "scripts/server.mjs", environment, dataDirectory });
+  running.worker = startPart({ name: "worker 1", file: ".next/worker/main.mjs", environment, dataDirectory });
+  await untilHealthy(address, () => false);
+  return runVitest({ ...environment, NODE_ENV: "test", STRANDLINE_TEST_URL: address, NO_COLOR: "1" });
+}
+
+function runVitest(environment) {
+  const reporters = ["--reporter=default", `--reporter=${path.join(ROOT, "scripts/closing-line-reporter.mjs")}`];
+  running.tests = spawn(process.execPath, [path.join(ROOT, "node_modules/vitest/vitest.mjs"), "run", ...reporters, ...process.argv.slice(2)], {
+    cwd: ROOT,
+    env: { ...process.env, ...environment },
+    stdio: ["ignore", "inherit", "inherit"],
+  });
+  return new Promise((resolve) => running.tests.once("exit", (code) => resolve(code ?? 1)));
+}
+
+async function cleanUp() {
+  running.tests?.kill("SIGTERM");
+  await Promise.all([stopPart(running.web), stopPart(running.worker)]);
+  await running.database?.stop();
+  rmSync(dataDirectory, { recursive: true, force: true });
+}
+
+for (const signal of ["SIGINT", "SIGTERM"]) {
+  process.once(signal, () => void cleanUp().then(() => process.exit(130)));
+}
+const code = await test().catch((error) => {
+  console.error(error.message);
+  return 1;
+});
+await cleanUp();
+process.exit(code);
