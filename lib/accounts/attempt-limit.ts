@@ -18,16 +18,16 @@ export interface AttemptLimit {
 export async function countAttempt(limit: AttemptLimit, who: string): Promise<Problem | null> {
   const now = new Date();
   const expired = new Date(now.getTime() - limit.window_ms);
-  const bucket = bucketOf(limit, who);
   // MariaDB assigns from left to right: `attempts` still sees the old start of the window.
-  await database().execute(sql`
-    insert into rate_limits (bucket, window_start, attempts) values (${bucket}, ${now}, 1)
+  const [rows] = await database().execute(sql`
+    insert into rate_limits (bucket, window_start, attempts) values (${bucketOf(limit, who)}, ${now}, 1)
     on duplicate key update
       attempts = if(window_start <= ${expired}, 1, attempts + 1),
-      window_start = if(window_start <= ${expired}, ${now}, window_start)`);
-  const [row] = await database().select().from(rateLimits).where(eq(rateLimits.bucket, bucket));
-  if (!row || row.attempts <= limit.attempts) return null;
-  const retryAfter_s = Math.max(1, Math.ceil((row.windowStart.getTime() + limit.window_ms - now.getTime()) / 1000));
+      window_start = if(window_start <= ${expired}, ${now}, window_start)
+    returning attempts, timestampdiff(second, ${expired}, window_start) as left_s`);
+  const [{ attempts, left_s }] = rows as unknown as { attempts: number; left_s: number }[];
+  if (attempts <= limit.attempts) return null;
+  const retryAfter_s = Math.max(1, left_s);
   return { ...problem("too-many-requests", `Try again in ${waitText(retryAfter_s)}.`), retryAfter_s };
 }
 

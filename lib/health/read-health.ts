@@ -13,14 +13,14 @@ export interface Health {
 }
 
 /** Returns what is up: the database, and a worker that was heard of within 30 s. */
-export async function readHealth(): Promise<Health> {
-  const alive = await Promise.race([anyWorker(), afterWait()]).catch(() => null);
+export async function readHealth(now = new Date()): Promise<Health> {
+  const alive = await Promise.race([anyWorker(now), afterWait()]).catch(() => null);
   if (alive === null) return { status: "unavailable", database: "unreachable", worker: "unknown" };
   return { status: alive ? "ok" : "starting", database: "ok", worker: alive ? "ok" : "missing" };
 }
 
-async function anyWorker(): Promise<boolean> {
-  const heardSince = new Date(Date.now() - SILENT_AFTER_MS);
+async function anyWorker(now: Date): Promise<boolean> {
+  const heardSince = new Date(now.getTime() - SILENT_AFTER_MS);
   const rows = await database().select({ id: workers.id }).from(workers).where(gt(workers.heartbeatAt, heardSince)).limit(1);
   return rows.length > 0;
 }

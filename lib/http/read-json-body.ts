@@ -1,6 +1,8 @@
 import { problem, type Problem } from "@/lib/problem";
 
 const MOST_BYTES = 1024 * 1024;
+/** So much of a body that is too large is still taken off the line, so that its sender can read the answer. */
+const MOST_DISCARDED_BYTES = 64 * MOST_BYTES;
 
 export interface JsonBody {
   /** As sent; what an idempotency key is bound to. */
@@ -20,16 +22,15 @@ export async function readJsonBody(request: Request): Promise<JsonBody | Problem
 }
 
 async function readAtMost(request: Request, most: number): Promise<Buffer | null> {
-  if (Number(request.headers.get("content-length") ?? 0) > most) return null;
   if (request.body === null) return Buffer.alloc(0);
   const chunks: Uint8Array[] = [];
   let length = 0;
   for await (const chunk of request.body as ReadableStream<Uint8Array> & AsyncIterable<Uint8Array>) {
     length += chunk.byteLength;
-    if (length > most) return null;
-    chunks.push(chunk);
+    if (length <= most) chunks.push(chunk);
+    else if (length > MOST_DISCARDED_BYTES) break;
   }
-  return Buffer.concat(chunks);
+  return length <= most ? Buffer.concat(chunks) : null;
 }
 
 function parse(bytes: Buffer): JsonBody | Problem {
