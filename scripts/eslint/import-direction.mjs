@@ -14,6 +14,7 @@ export const MAY_IMPORT = {
   "lib/number-text": ["lib/science"],
   "lib/http": ["lib/http", "lib/accounts", "lib/problem", "db"],
   "lib/accounts": ["lib/accounts", "lib/http", "lib/problem", "db"],
+  "lib/health": ["lib/health", "lib/http", "db"],
   "lib/jobs": ["lib/jobs", "lib/runs", "lib/archives", "lib/analyses", "lib/detections", "lib/accounts", "lib/http", "lib/problem", "db"],
   "lib/archives": ["lib/archives", "lib/runs", "lib/jobs", "lib/accounts", "lib/http", "lib/formats", "lib/problem", "db"],
   "lib/runs": ["lib/runs", "lib/archives", "lib/jobs", "lib/accounts", "lib/http", "lib/formats", "lib/science", "lib/problem", "db"],
