@@ -19,7 +19,7 @@ import {
 import type { PackedSpins } from "@/lib/science/correlators/packed-spins";
 import { listPairs, pairCount } from "@/lib/science/correlators/pairs";
 import type { ReadoutCorrection } from "@/lib/science/correlators/readout-correction";
-import { summariseReplicates, type IntervalKind } from "@/lib/science/correlators/replicate-summary";
+import { errorBarOf, type IntervalKind } from "@/lib/science/correlators/error-bars";
 import type { TracePlan } from "@/lib/science/correlators/trace-plan";
 
 /** Everything the correlators of one evolution time depend on; can be sent to a thread as it is. */
@@ -172,10 +172,10 @@ function analysePair({ task, run, counts, result, sharesOfPair }: Work, { i, j, 
   const factorJ = factors + j * valueBytes;
   kernel.correlate(bothUp, siteRow(layout, i), siteRow(layout, j), factorI, factorJ, shots, scale, replicates, values);
   const acceleration = task.interval === "bca" ? pairAcceleration(jointOutcomes(counts, i, j, pair)) : null;
-  const summary = summariseReplicates(kernel, layout, values, result.value[pair], acceleration);
-  result.error[pair] = summary.error;
-  result.low[pair] = summary.low;
-  result.high[pair] = summary.high;
+  const bar = errorBarOf(kernel, layout, values, result.value[pair], acceleration);
+  result.error[pair] = bar.error;
+  result.low[pair] = bar.low;
+  result.high[pair] = bar.high;
   for (const { trace, share } of sharesOfPair.get(pair) ?? []) {
     kernel.addShare(values, share, replicates, layout.traces + trace * valueBytes);
   }
@@ -198,10 +198,10 @@ function analyseTraces(work: Work): void {
   task.plan.distances.forEach((_, q) => {
     const row = layout.traces + q * layout.valueBytes;
     const acceleration = task.interval === "bca" ? traceAcceleration(work, q) : null;
-    const summary = summariseReplicates(kernel, layout, row, result.traceValue[q], acceleration);
-    result.traceError[q] = summary.error;
-    result.traceLow[q] = summary.low;
-    result.traceHigh[q] = summary.high;
+    const bar = errorBarOf(kernel, layout, row, result.traceValue[q], acceleration);
+    result.traceError[q] = bar.error;
+    result.traceLow[q] = bar.low;
+    result.traceHigh[q] = bar.high;
     const replicates = new Float64Array(kernel.memory.buffer, row, task.replicates);
     result.traceReplicates.set(replicates, q * task.replicates);
   });

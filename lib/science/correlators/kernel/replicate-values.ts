@@ -49,40 +49,63 @@ export function addShare(values: usize, share: f64, replicates: u32, target: usi
 /** The standard deviation (n − 1; two passes) of at least two values; it also learns their range for `sortIntoBins`. */
 export function spread(values: usize, replicates: u32): f64 {
   const end = values + (usize(replicates) << 3);
-  const pairsEnd = values + (usize(replicates & ~1) << 3);
-  let sums = f64x2.splat(0);
+  const fourthsEnd = values + (usize(replicates & ~7) << 3);
+  let sum0 = f64x2.splat(0);
+  let sum1 = f64x2.splat(0);
+  let sum2 = f64x2.splat(0);
+  let sum3 = f64x2.splat(0);
   let low = f64x2.splat(Infinity);
   let high = f64x2.splat(-Infinity);
-  for (let at = values; at < pairsEnd; at += 16) {
-    const x = v128.load(at);
-    sums = f64x2.add(sums, x);
-    low = f64x2.pmin(low, x);
-    high = f64x2.pmax(high, x);
+  for (let at = values; at < fourthsEnd; at += 64) {
+    const a = v128.load(at);
+    const b = v128.load(at, 16);
+    const c = v128.load(at, 32);
+    const d = v128.load(at, 48);
+    sum0 = f64x2.add(sum0, a);
+    sum1 = f64x2.add(sum1, b);
+    sum2 = f64x2.add(sum2, c);
+    sum3 = f64x2.add(sum3, d);
+    low = f64x2.pmin(low, f64x2.pmin(f64x2.pmin(a, b), f64x2.pmin(c, d)));
+    high = f64x2.pmax(high, f64x2.pmax(f64x2.pmax(a, b), f64x2.pmax(c, d)));
   }
-  let sum = f64x2.extract_lane(sums, 0) + f64x2.extract_lane(sums, 1);
+  let sum = sumLanes(f64x2.add(f64x2.add(sum0, sum1), f64x2.add(sum2, sum3)));
   smallest = min(f64x2.extract_lane(low, 0), f64x2.extract_lane(low, 1));
   largest = max(f64x2.extract_lane(high, 0), f64x2.extract_lane(high, 1));
-  for (let at = pairsEnd; at < end; at += 8) {
+  for (let at = fourthsEnd; at < end; at += 8) {
     sum += load<f64>(at);
     smallest = min(smallest, load<f64>(at));
     largest = max(largest, load<f64>(at));
   }
   if (smallest == largest) return 0;
-  return Math.sqrt(squaresAround(values, pairsEnd, end, sum / f64(replicates), f64(replicates)) / f64(replicates - 1));
+  const n = f64(replicates);
+  return Math.sqrt(squaresAround(values, fourthsEnd, end, sum / n, n) / (n - 1));
 }
 
-function squaresAround(values: usize, pairsEnd: usize, end: usize, centre: f64, n: f64): f64 {
+// @ts-ignore: decorator
+@inline
+function sumLanes(x: v128): f64 {
+  return f64x2.extract_lane(x, 0) + f64x2.extract_lane(x, 1);
+}
+
+function squaresAround(values: usize, fourthsEnd: usize, end: usize, centre: f64, n: f64): f64 {
   const centres = f64x2.splat(centre);
-  let squares = f64x2.splat(0);
-  let drifts = f64x2.splat(0);
-  for (let at = values; at < pairsEnd; at += 16) {
-    const d = f64x2.sub(v128.load(at), centres);
-    squares = f64x2.add(squares, f64x2.mul(d, d));
-    drifts = f64x2.add(drifts, d);
+  let squaresA = f64x2.splat(0);
+  let squaresB = f64x2.splat(0);
+  let driftsA = f64x2.splat(0);
+  let driftsB = f64x2.splat(0);
+  for (let at = values; at < fourthsEnd; at += 64) {
+    const a = f64x2.sub(v128.load(at), centres);
+    const b = f64x2.sub(v128.load(at, 16), centres);
+    const c = f64x2.sub(v128.load(at, 32), centres);
+    const d = f64x2.sub(v128.load(at, 48), centres);
+    squaresA = f64x2.add(squaresA, f64x2.add(f64x2.mul(a, a), f64x2.mul(b, b)));
+    squaresB = f64x2.add(squaresB, f64x2.add(f64x2.mul(c, c), f64x2.mul(d, d)));
+    driftsA = f64x2.add(driftsA, f64x2.add(a, b));
+    driftsB = f64x2.add(driftsB, f64x2.add(c, d));
   }
-  let square = f64x2.extract_lane(squares, 0) + f64x2.extract_lane(squares, 1);
-  let drift = f64x2.extract_lane(drifts, 0) + f64x2.extract_lane(drifts, 1);
-  for (let at = pairsEnd; at < end; at += 8) {
+  let square = sumLanes(f64x2.add(squaresA, squaresB));
+  let drift = sumLanes(f64x2.add(driftsA, driftsB));
+  for (let at = fourthsEnd; at < end; at += 8) {
     const d = load<f64>(at) - centre;
     square += d * d;
     drift += d;
@@ -135,30 +158,47 @@ export function quantile(
   const place = f64(replicates - 1) * p;
   const rank = u32(place);
   const share = place - f64(rank);
-  const below = orderStatistic(values, replicates, bins, sizes, rank, scratch);
+  findBin(sizes, rank);
+  const gathered = gatherBin(values, replicates, bins, scratch);
+  const below = load<f64>(scratch + (usize(rankInBin) << 3));
   if (share == 0) return below;
-  return below + (orderStatistic(values, replicates, bins, sizes, rank + 1, scratch) - below) * share;
+  let next = rankInBin + 1;
+  if (next == gathered) {
+    findBin(sizes, rank + 1);
+    gatherBin(values, replicates, bins, scratch);
+    next = 0;
+  }
+  return below + (load<f64>(scratch + (usize(next) << 3)) - below) * share;
 }
 
-function orderStatistic(
-  values: usize, replicates: u32, bins: usize, sizes: usize, rank: u32, scratch: usize,
-): f64 {
-  let bin: usize = 0;
-  let inBin = rank;
-  while (inBin >= load<u32>(sizes + (bin << 2))) {
-    inBin -= load<u32>(sizes + (bin << 2));
+let bin: u32 = 0;
+let rankInBin: u32 = 0;
+
+/** Finds the bin of the value of a rank, and its rank there. */
+function findBin(sizes: usize, rank: u32): void {
+  bin = 0;
+  rankInBin = rank;
+  let size = load<u32>(sizes);
+  while (rankInBin >= size) {
+    rankInBin -= size;
     bin++;
+    size = load<u32>(sizes + (usize(bin) << 2));
   }
+}
+
+/** Writes the bin's values to `scratch` in ascending order; returns their number. */
+function gatherBin(values: usize, replicates: u32, bins: usize, scratch: usize): u32 {
+  const wanted = i8x16.splat(u8(bin));
   let found: u32 = 0;
   for (let b: usize = 0; b < usize(replicates); b += 16) {
-    let hits: u32 = i8x16.bitmask(i8x16.eq(v128.load(bins + b), i8x16.splat(u8(bin))));
+    let hits: u32 = i8x16.bitmask(i8x16.eq(v128.load(bins + b), wanted));
     while (hits) {
       const at = b + ctz(hits);
       hits &= hits - 1;
       if (at < usize(replicates)) found = insertSorted(scratch, found, load<f64>(values + (at << 3)));
     }
   }
-  return load<f64>(scratch + (usize(inBin) << 3));
+  return found;
 }
 
 function insertSorted(sorted: usize, length: u32, value: f64): u32 {

@@ -7,7 +7,7 @@ import { normalQuantile } from "@/lib/science/stats/normal-quantile";
 export type IntervalKind = "percentile" | "bca";
 
 /** Error bar and 95 % interval of one estimate. */
-export interface ReplicateSummary {
+export interface ErrorBar {
   error: number;
   low: number;
   high: number;
@@ -15,20 +15,20 @@ export interface ReplicateSummary {
 
 const LOW = 0.025;
 const HIGH = 0.975;
-const NO_ERROR_BAR: ReplicateSummary = { error: Number.NaN, low: Number.NaN, high: Number.NaN };
+const NO_ERROR_BAR: ErrorBar = { error: Number.NaN, low: Number.NaN, high: Number.NaN };
 
 /**
  * Returns the standard deviation (n − 1) and the percentile interval of the replicates at byte offset `values`, or BCa
  * when an acceleration is given. Where BCa does not exist (all replicates on one side of the estimate), the percentile
  * interval stands in. All NaN below two replicates.
  */
-export function summariseReplicates(
+export function errorBarOf(
   kernel: BootstrapKernel,
   layout: BootstrapLayout,
   values: number,
   estimate: number,
   acceleration: number | null,
-): ReplicateSummary {
+): ErrorBar {
   const { replicates, bins, binSizes, sorted } = layout;
   if (replicates < 2) return NO_ERROR_BAR;
   const error = kernel.spread(values, replicates);
