@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { bootstrapKernel } from "@/lib/science/correlators/bootstrap-kernel";
 import { layOutBootstrap } from "@/lib/science/correlators/bootstrap-layout";
-import { fineDrawLimits } from "@/lib/science/correlators/multiplicity-law";
+import { BYTE_SHARES, fineDrawLimits, MULTIPLICITY_RATE } from "@/lib/science/correlators/multiplicity-law";
 import { chiSquareSurvival, normalCdf } from "@/lib/science/stats/special-functions";
 import { plainMultiplicities } from "@/tests/science/correlators/plain-bootstrap";
 
@@ -23,6 +23,16 @@ function factorial(n: number): number {
 }
 
 describe("the multiplicities of the bootstrap", () => {
+  it("start from the Poisson law to 2e-12 a value", () => {
+    const limits = fineDrawLimits();
+    for (let n = 0; n < 15; n++) {
+      const fine = (limits[n] - (n === 0 ? 0 : limits[n - 1])) / 2 ** 32;
+      const drawn = ((BYTE_SHARES[n] ?? 0) + 2 * fine) / 256;
+      const law = (Math.exp(-MULTIPLICITY_RATE) * MULTIPLICITY_RATE ** n) / factorial(n);
+      expect(Math.abs(drawn - law)).toBeLessThan(2e-12);
+    }
+  });
+
   it.each([1, 2, 5, 63, 64, 65, 1000])("of %i shots are those of the plain twin", (shots) => {
     const weights = drawBlock(shots, 2, 9, 4711);
     for (const r of [0, 3, 17, 31]) expect(column(weights, r)).toEqual(plainMultiplicities(4711, 9, 64 + r, shots));
