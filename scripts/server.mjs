@@ -9,7 +9,10 @@ const app = next({ dev, hostname, port });
 const handle = app.getRequestHandler();
 await app.prepare();
 
-const server = createServer((request, response) => void handle(request, response));
+const server = createServer((request, response) => {
+  nameClient(request);
+  void handle(request, response);
+});
 // An upload may take hours on a slow line; the stock limit of five minutes would cut it.
 server.requestTimeout = 0;
 server.keepAliveTimeout = 65_000;
@@ -18,6 +21,12 @@ server.on("error", (error) => {
   process.exit(1);
 });
 server.listen(port, hostname);
+
+/** Sign-in attempts are limited by client: only a proxy on this machine is believed about who that is. */
+function nameClient({ headers, socket }) {
+  const local = /^(::ffff:)?127\.|^::1$/.test(socket.remoteAddress ?? "");
+  if (!local || !headers["x-forwarded-for"]) headers["x-forwarded-for"] = socket.remoteAddress;
+}
 
 function end() {
   server.closeAllConnections();
