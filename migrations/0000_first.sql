@@ -8,9 +8,8 @@ CREATE TABLE `analyses` (
 	`label` varchar(120),
 	`parameters` json NOT NULL,
 	`provenance` json NOT NULL,
-	`state` enum('queued','running','done','failed','cancelled') NOT NULL,
 	`summary` json,
-	`job_id` char(24) character set ascii collate ascii_bin,
+	`job_id` char(24) character set ascii collate ascii_bin NOT NULL,
 	`created_by` char(24) character set ascii collate ascii_bin NOT NULL,
 	`created_at` datetime(3) NOT NULL,
 	`finished_at` datetime(3),
@@ -164,7 +163,6 @@ CREATE TABLE `runs` (
 	`j_max_hz` double,
 	`alpha` double,
 	`campaign` varchar(120),
-	`status` enum('empty','ingesting','ready','failed') NOT NULL,
 	`last_problem` json,
 	`current_version` int NOT NULL DEFAULT 0,
 	`created_by` char(24) character set ascii collate ascii_bin NOT NULL,
@@ -265,7 +263,7 @@ ALTER TABLE `sessions` ADD CONSTRAINT `sessions_user_id_users_id_fk` FOREIGN KEY
 ALTER TABLE `sessions` ADD CONSTRAINT `sessions_group_id_member_groups_id_fk` FOREIGN KEY (`group_id`) REFERENCES `member_groups`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `tokens` ADD CONSTRAINT `tokens_group_id_member_groups_id_fk` FOREIGN KEY (`group_id`) REFERENCES `member_groups`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `tokens` ADD CONSTRAINT `tokens_user_id_users_id_fk` FOREIGN KEY (`user_id`) REFERENCES `users`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
-CREATE INDEX `analyses_by_run` ON `analyses` (`group_id`,`run_id`,`state`);--> statement-breakpoint
+CREATE INDEX `analyses_by_run` ON `analyses` (`group_id`,`run_id`);--> statement-breakpoint
 CREATE INDEX `archives_by_run` ON `archives` (`run_id`,`created_at`);--> statement-breakpoint
 CREATE INDEX `archive_blobs_incomplete` ON `archive_blobs` (`complete`,`created_at`);--> statement-breakpoint
 CREATE INDEX `detections_by_run` ON `detections` (`group_id`,`run_id`);--> statement-breakpoint

@@ -1,4 +1,4 @@
-import { index, int, mysqlEnum, mysqlTable, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
+import { index, int, mysqlTable, uniqueIndex, varchar } from "drizzle-orm/mysql-core";
 import { id, jsonText, moment } from "./columns";
 import { detections } from "./detections";
 import { groups } from "./groups";
@@ -57,9 +57,9 @@ export const analyses = mysqlTable(
     label: varchar({ length: 120 }),
     parameters: jsonText<AnalysisParameters>()().notNull(),
     provenance: jsonText<AnalysisProvenance>()().notNull(),
-    state: mysqlEnum(["queued", "running", "done", "failed", "cancelled"]).notNull(),
+    /** Null until the job is done; its state is the analysis's state. */
     summary: jsonText<AnalysisSummary>()(),
-    jobId: id(),
+    jobId: id().notNull(),
     createdBy: id().notNull().references(() => users.id),
     createdAt: moment().notNull(),
     finishedAt: moment(),
@@ -67,6 +67,6 @@ export const analyses = mysqlTable(
   (table) => [
     uniqueIndex("analyses_numbered").on(table.runId, table.number),
     /** Runs table and run page: the latest analyses of a group's runs. */
-    index("analyses_by_run").on(table.groupId, table.runId, table.state),
+    index("analyses_by_run").on(table.groupId, table.runId),
   ],
 );

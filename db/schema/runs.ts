@@ -18,7 +18,6 @@ export const runs = mysqlTable(
     jMaxHz: double(),
     alpha: double(),
     campaign: varchar({ length: 120 }),
-    status: mysqlEnum(["empty", "ingesting", "ready", "failed"]).notNull(),
     /** Why the latest reading was refused; the version before it still stands. */
     lastProblem: jsonText<Problem>()(),
     /** Number of the current version in run_versions; 0 before the first. */
