@@ -29,7 +29,8 @@ type Handler<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodType | nul
 /** Asked before query and body are looked at: the `not-found` Problem when what the path names is not there for this actor. */
 type Absence<P extends z.ZodType, A> = (call: { actor: ActorFor<A>; params: z.output<P> }) => Promise<Problem | null>;
 
-export type RouteHandler = (request: Request, context: { params: Promise<Record<string, string>> }) => Promise<Response>;
+/** Next gives a path without parameters no `params`. */
+export type RouteHandler = (request: Request, context: { params: Promise<Record<string, string> | undefined> }) => Promise<Response>;
 
 /**
  * Returns the route handler of an endpoint. Order of checks: 401 who, 403 cross-site or not allowed, 404 path, then
@@ -42,7 +43,7 @@ export function serve<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
 ): RouteHandler {
   return async (request, context) => {
     try {
-      const outcome = await handle(endpoint, handler, absence, request, await context.params);
+      const outcome = await handle(endpoint, handler, absence, request, (await context.params) ?? {});
       return isProblem(outcome) ? problemResponse(outcome) : outcome;
     } catch (error) {
       logUnexpected(`${endpoint.method} ${endpoint.path}`, error);

@@ -48,3 +48,11 @@ describe("a JSON body", () => {
     expect(problem).toMatchObject({ status: 422, errors: [{ where: "__proto__" }] });
   });
 });
+
+describe("a path that is none of the API's", () => {
+  it("is answered with a problem, whoever asks and however", async () => {
+    for (const method of ["GET", "POST", "PUT", "PATCH", "DELETE"]) {
+      expect((await problemIn(await call(method, "/api/v1/nothing/here"))).status).toBe(404);
+    }
+  });
+});
