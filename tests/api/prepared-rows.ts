@@ -25,21 +25,24 @@ export async function prepareRows({ groupId, userId: createdBy }: Pick<Member, "
   const archive = { archiveId: ids.archives, filename: "shots.csv", sha256: sha256Of(ids.archives), role: "shots", format: "csv" } as const;
 
   await database().insert(runs).values({
-    ...made, id: ids.runs, title: "Prepared", notes: "", brightIs: "up", model: "ising", status: "ready", currentVersion: 1, updatedAt: createdAt,
+    ...made, id: ids.runs, title: "Prepared", notes: "", brightIs: "up", model: "ising", currentVersion: 1, updatedAt: createdAt,
   });
   const blobId = newId();
   await database().insert(blobs).values({ id: blobId, groupId, sha256: archive.sha256, bytes: SHOTS_FILE.length, complete: true, createdAt });
   await database().insert(blobChunks).values({ blobId, seq: 0, data: SHOTS_FILE });
   await database().insert(archives).values({ ...made, id: ids.archives, blobId, filename: archive.filename, role: "shots", state: "read", format: "csv" });
   await database().insert(runVersions).values({
-    runId: ids.runs, number: 1, groupId, archives: [archive], sites: 2, siteNames: ["site_0", "site_1"], countType: "uint16", timesUs: [0],
+    runId: ids.runs, number: 1, groupId, archives: [archive], sites: 2, siteNames: ["site_0", "site_1"], countType: "uint16", timesUs: [0], timeSlots: [0],
     shotsPerTime: [2], shotsSetAside: {}, calibrationDarkShots: 0, calibrationBrightShots: 0, brightness: [[0.5, 4.5]], warnings: [], createdAt,
   });
-  await database().insert(jobs).values({
-    ...made, id: ids.jobs, kind: "ingest", payload: { kind: "ingest", runId: ids.runs }, state: "done", progress: 1, notBefore: createdAt, finishedAt: createdAt,
-  });
+  const analysisJobId = newId();
+  const ended = { ...made, progress: 1, notBefore: createdAt, finishedAt: createdAt };
+  await database().insert(jobs).values([
+    { ...ended, id: ids.jobs, kind: "ingest", payload: { kind: "ingest", runId: ids.runs }, state: "done" },
+    { ...ended, id: analysisJobId, kind: "analysis", payload: { kind: "analysis", analysisId: ids.analyses, runId: ids.runs }, state: "cancelled" },
+  ]);
   await database().insert(detections).values({ ...made, id: ids.detections, runVersion: 1, number: 1, method: "fixed", sites: [0, 1].map(preparedSite) });
-  await database().insert(analyses).values({ ...made, id: ids.analyses, runVersion: 1, detectionId: ids.detections, number: 1, state: "queued", ...preparedAnalysis(ids.detections) });
+  await database().insert(analyses).values({ ...made, id: ids.analyses, runVersion: 1, detectionId: ids.detections, number: 1, jobId: analysisJobId, ...preparedAnalysis(ids.detections) });
   await database().insert(tokens).values({
     id: ids.tokens, groupId, userId: createdBy, name: "Prepared", scopes: ["read"], secretHash: sha256Of(ids.tokens), hint: "sl_prepa", createdAt,
     expiresAt: new Date(createdAt.getTime() + 3600_000),
