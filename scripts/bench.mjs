@@ -32,7 +32,10 @@ const REPEATS = "3";
 requireNumpy();
 mkdirSync(folder, { recursive: true });
 await build({
-  entryPoints: { "analyse-run": `${root}scripts/bench/analyse-run.ts`, "time-thread": `${root}scripts/bench/time-thread.ts` },
+  entryPoints: {
+    "analyse-run": `${root}scripts/bench/analyse-run.ts`,
+    "time-thread": `${root}scripts/bench/time-thread.ts`,
+  },
   outdir: folder,
   outExtension: { ".js": ".mjs" },
   bundle: true,
@@ -74,7 +77,9 @@ function run(command, more) {
 }
 
 function measureOurs(threads) {
-  const { runs, peakRss_MiB } = JSON.parse(run(process.execPath, [`${folder}/analyse-run.mjs`, file, threads, REPEATS]));
+  const { runs, peakRss_MiB } = JSON.parse(
+    run(process.execPath, [`${folder}/analyse-run.mjs`, file, threads, REPEATS]),
+  );
   return runs.map(({ total, ...stages }) => ({ total: total / 1000, stages: inSeconds(stages), peakRss_MiB }));
 }
 
@@ -98,7 +103,9 @@ function median(values) {
 }
 
 function report() {
-  console.log(`N = ${options.sites}, T = ${options.times}, M = ${options.shots}, B = 1000, all pairs, reference traces`);
+  console.log(
+    `N = ${options.sites}, T = ${options.times}, M = ${options.shots}, B = 1000, all pairs, reference traces`,
+  );
   const totals = new Map();
   for (const [name, runs] of measured) {
     const total = median(runs.map((one) => one.total));

@@ -27,7 +27,10 @@ function readNpy(bytes: Uint8Array): NpzArray {
   const sizes = /'shape': \(([^)]*)\)/.exec(header)?.[1] ?? "";
   const reader = READERS[kind];
   if (reader === undefined) throw new Error(`Fixture of kind ${kind}`);
-  const shape = sizes.split(",").filter((size) => size.trim() !== "").map(Number);
+  const shape = sizes
+    .split(",")
+    .filter((size) => size.trim() !== "")
+    .map(Number);
   const length = shape.reduce((product, size) => product * size, 1);
   return { shape, values: Float64Array.from({ length }, (_, n) => reader.read(view, start + n * reader.bytes)) };
 }

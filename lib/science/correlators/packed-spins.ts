@@ -39,7 +39,13 @@ export function packSpins(
 }
 
 /** Sets the bits of bright sites. A whole count is above θ when it is above ⌊θ⌋, and the sign bit tells so at once. */
-function packWhole(counts: Uint16Array, shots: number, sites: number, thresholds: Float64Array, words: Uint32Array): void {
+function packWhole(
+  counts: Uint16Array,
+  shots: number,
+  sites: number,
+  thresholds: Float64Array,
+  words: Uint32Array,
+): void {
   const limits = Int32Array.from(thresholds, (threshold) =>
     Number.isNaN(threshold) ? LARGEST_COUNT : Math.max(-1, Math.min(LARGEST_COUNT, Math.floor(threshold))),
   );

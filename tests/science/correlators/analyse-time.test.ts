@@ -3,7 +3,12 @@ import { analyseTime, type TimeTask } from "@/lib/science/correlators/analyse-ti
 import { listPairs } from "@/lib/science/correlators/pairs";
 import { exactReadoutCorrection, drawReadoutReplicates } from "@/lib/science/correlators/readout-correction";
 import { planDistanceTraces, planReferenceTraces, type TracePlan } from "@/lib/science/correlators/trace-plan";
-import { bcaInterval, jackknifeAcceleration, percentileInterval, standardDeviation } from "@/lib/science/stats/intervals";
+import {
+  bcaInterval,
+  jackknifeAcceleration,
+  percentileInterval,
+  standardDeviation,
+} from "@/lib/science/stats/intervals";
 import { plainCorrelator, plainMean, plainMultiplicities } from "@/tests/science/correlators/plain-bootstrap";
 import { correlatedSpins, packShots } from "@/tests/science/correlators/spin-samples";
 
@@ -56,8 +61,14 @@ describe("the bootstrap of one time agrees with plain loops over the same draws"
     const result = analyseTime(task(spins, planReferenceTraces(chain(sites), 0), { replicates }));
     const plain = plainReplicates(spins, replicates);
     expectClose(result.error, plain.map(standardDeviation));
-    expectClose(result.low, plain.map((values) => percentileInterval(values)[0]));
-    expectClose(result.high, plain.map((values) => percentileInterval(values)[1]));
+    expectClose(
+      result.low,
+      plain.map((values) => percentileInterval(values)[0]),
+    );
+    expectClose(
+      result.high,
+      plain.map((values) => percentileInterval(values)[1]),
+    );
     const times = Array.from({ length: replicates }, (_, b) => plainMultiplicities(SEED, 5, b, shots));
     const means = Array.from({ length: sites }, (_, i) => times.map((weights) => plainMean(spins, weights, i)));
     expectClose(result.meanError, means.map(standardDeviation));
@@ -71,8 +82,14 @@ describe("the bootstrap of one time agrees with plain loops over the same draws"
     });
     const result = analyseTime(task(spins, planReferenceTraces(chain(4), 0), { replicates: 301 }));
     const plain = plainReplicates(spins, 301);
-    expectClose(result.low, plain.map((values) => percentileInterval(values)[0]));
-    expectClose(result.high, plain.map((values) => percentileInterval(values)[1]));
+    expectClose(
+      result.low,
+      plain.map((values) => percentileInterval(values)[0]),
+    );
+    expectClose(
+      result.high,
+      plain.map((values) => percentileInterval(values)[1]),
+    );
     expect([...result.fewFlips]).toEqual([0, 0, 1, 0, 1, 1]);
   });
 
@@ -93,7 +110,7 @@ describe("the bootstrap of one time agrees with plain loops over the same draws"
     const plain = plainReplicates(spins, 70).map((values, p) =>
       values.map((value, b) => {
         const factors = replicates.inverseFactor;
-        return (value * (150 / 149)) * factors[pairs[2 * p] * 70 + b] * factors[pairs[2 * p + 1] * 70 + b];
+        return value * (150 / 149) * factors[pairs[2 * p] * 70 + b] * factors[pairs[2 * p + 1] * 70 + b];
       }),
     );
     expectClose(result.error, plain.map(standardDeviation));
@@ -118,9 +135,18 @@ describe("the bootstrap of one time agrees with plain loops over the same draws"
         return plainCorrelator(spins, times, pairs[2 * p], pairs[2 * p + 1]);
       });
     const wanted = plain.map((values, p) => bcaInterval(result.value[p], values, jackknifeAcceleration(leaveOut(p))));
-    expectClose(result.low, wanted.map((interval) => interval?.[0] ?? Number.NaN), 1e-9);
-    expectClose(result.high, wanted.map((interval) => interval?.[1] ?? Number.NaN), 1e-9);
-    const average = (rows: number[][]) => rows[0].map((_, n) => rows.reduce((sum, row) => sum + row[n], 0) / rows.length);
+    expectClose(
+      result.low,
+      wanted.map((interval) => interval?.[0] ?? Number.NaN),
+      1e-9,
+    );
+    expectClose(
+      result.high,
+      wanted.map((interval) => interval?.[1] ?? Number.NaN),
+      1e-9,
+    );
+    const average = (rows: number[][]) =>
+      rows[0].map((_, n) => rows.reduce((sum, row) => sum + row[n], 0) / rows.length);
     const neighbours = [0, 3, 5];
     const values = average(neighbours.map((p) => plain[p]));
     expectClose(result.traceReplicates.subarray(0, 400), values);
@@ -162,7 +188,12 @@ describe("the errors of a pair", () => {
     { outcomes: [520, 110, 130, 240], delta: 0.0281251489 },
     { outcomes: [250, 250, 250, 250], delta: 0.0316227766 },
   ])("of outcomes $outcomes are $delta within Monte Carlo noise", ({ outcomes, delta }) => {
-    const kinds = [[1, 1], [1, -1], [-1, 1], [-1, -1]];
+    const kinds = [
+      [1, 1],
+      [1, -1],
+      [-1, 1],
+      [-1, -1],
+    ];
     const spins = outcomes.flatMap((shots, n) => Array.from({ length: shots }, () => kinds[n]));
     const replicates = 20_000;
     const result = analyseTime(task(spins, planReferenceTraces(chain(2), 0), { replicates }));
@@ -205,9 +236,15 @@ describe("the errors of a pair", () => {
 describe("the result of a time", () => {
   it("is the same to the last bit whatever ran before it, and passes between threads", () => {
     const plan = planDistanceTraces(chain(9));
-    const tasks = [300, 41, 1000].map((shots, timeIndex) => ({ ...task(correlatedSpins(shots, 9, shots), plan), timeIndex }));
+    const tasks = [300, 41, 1000].map((shots, timeIndex) => ({
+      ...task(correlatedSpins(shots, 9, shots), plan),
+      timeIndex,
+    }));
     const forward = tasks.map(analyseTime);
-    const backward = [...tasks].reverse().map((one) => analyseTime(structuredClone(one))).reverse();
+    const backward = [...tasks]
+      .reverse()
+      .map((one) => analyseTime(structuredClone(one)))
+      .reverse();
     expect(structuredClone(backward)).toEqual(forward);
   });
 

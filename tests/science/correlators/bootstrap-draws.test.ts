@@ -68,7 +68,9 @@ describe("the multiplicities of the bootstrap", () => {
       const weights = drawBlock(shots, block, 1, 7);
       weights.forEach((n) => (found[Math.min(n, 7)] += 1));
       for (let r = 0; r < 32; r++) {
-        const firstHalf = column(weights, r).slice(0, shots / 2).reduce((sum, n) => sum + n, 0);
+        const firstHalf = column(weights, r)
+          .slice(0, shots / 2)
+          .reduce((sum, n) => sum + n, 0);
         squares += (firstHalf - shots / 2) ** 2;
       }
     }

@@ -5,7 +5,12 @@ import { plainCorrelator, plainMean } from "@/tests/science/correlators/plain-bo
 import { correlatedSpins, packShots } from "@/tests/science/correlators/spin-samples";
 
 function shotsOf(outcomes: number[]): number[][] {
-  const kinds = [[1, 1], [1, -1], [-1, 1], [-1, -1]];
+  const kinds = [
+    [1, 1],
+    [1, -1],
+    [-1, 1],
+    [-1, -1],
+  ];
   return outcomes.flatMap((shots, n) => Array.from({ length: shots }, () => kinds[n]));
 }
 
@@ -39,7 +44,13 @@ describe("the acceleration of BCa in closed form", () => {
 
   it("equals leaving out each shot for a weighted sum of pairs", () => {
     const spins = correlatedSpins(60, 4, 8);
-    const mean = Float64Array.from({ length: 4 }, (_, i) => plainMean(spins, spins.map(() => 1), i));
+    const mean = Float64Array.from({ length: 4 }, (_, i) =>
+      plainMean(
+        spins,
+        spins.map(() => 1),
+        i,
+      ),
+    );
     const values = leaveOneOut(
       spins,
       (times) => 0.7 * plainCorrelator(spins, times, 0, 1) + 0.3 * plainCorrelator(spins, times, 1, 3),

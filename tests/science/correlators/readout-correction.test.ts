@@ -11,7 +11,10 @@ const REPLICATES = 4000;
 
 describe("the readout correction", () => {
   it("refuses sites whose F is not above 0.2, by name", () => {
-    const errors = { falseBright: Float64Array.of(0.1, 0.5, 0.4, Number.NaN), falseDark: Float64Array.of(0.1, 0.3, 0.3, 0) };
+    const errors = {
+      falseBright: Float64Array.of(0.1, 0.5, 0.4, Number.NaN),
+      falseDark: Float64Array.of(0.1, 0.3, 0.3, 0),
+    };
     expect(readoutFactors(errors)[0]).toBeCloseTo(0.8, 15);
     expect(sitesBeyondCorrection(errors)).toEqual([1, 3]);
     expect(() => exactReadoutCorrection(errors, "up")).toThrow("1, 3");

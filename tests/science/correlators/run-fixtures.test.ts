@@ -47,7 +47,10 @@ function loadRun(name: string): Run {
 
 /** The CSV form: shots with an empty count are set aside. */
 function raggedCounts(name: string, expected: Expected): Uint16Array[] {
-  const rows = strFromU8(gunzipSync(readFileSync(`${RUNS}/${name}/shots.csv.gz`))).trim().split("\n").slice(1);
+  const rows = strFromU8(gunzipSync(readFileSync(`${RUNS}/${name}/shots.csv.gz`)))
+    .trim()
+    .split("\n")
+    .slice(1);
   const kept = rows.map((row) => row.split(",")).filter((cells) => cells.every((cell) => /^[0-9.]+\s*$/.test(cell)));
   return expected.deterministic.times_us.map((time) =>
     Uint16Array.from(kept.filter((cells) => Number(cells[0]) === time).flatMap((cells) => cells.slice(2).map(Number))),
@@ -97,49 +100,52 @@ function expectRelative(found: number, wanted: number, tolerance: number): void 
   expect(Math.abs(found - wanted)).toBeLessThanOrEqual(tolerance * Math.max(Math.abs(wanted), 1e-3));
 }
 
-describe.each(["ising-chain-10", "planar-5x5", "straight-front-24", "xy-chain-12", "ragged-drift-8"])("run %s", (name) => {
-  const run = loadRun(name);
-  const { deterministic, statistical, parameters } = run.expected;
-  const plan = planReferenceTraces(run.positions, parameters.reference);
-  const results = analyse(run, plan);
-  const traces = collectTraces(plan, Float64Array.from(deterministic.times_us), results, REPLICATES);
+describe.each(["ising-chain-10", "planar-5x5", "straight-front-24", "xy-chain-12", "ragged-drift-8"])(
+  "run %s",
+  (name) => {
+    const run = loadRun(name);
+    const { deterministic, statistical, parameters } = run.expected;
+    const plan = planReferenceTraces(run.positions, parameters.reference);
+    const results = analyse(run, plan);
+    const traces = collectTraces(plan, Float64Array.from(deterministic.times_us), results, REPLICATES);
 
-  it("has the shots, means and correlators an independent program found", () => {
-    expect([...traces.shotsPerTime]).toEqual(deterministic.shotsPerTime);
-    deterministic.mean.forEach((ofTime, k) =>
-      ofTime.forEach((mean, i) => expectRelative(results[k].mean[i], mean, deterministic.tolerance)),
-    );
-    for (const [k, matrix] of Object.entries(deterministic.correlators_at)) {
-      matrix.forEach((row, i) =>
-        row.forEach((value, j) => {
-          if (i !== j) expectRelative(results[Number(k)].value[pairIndex(matrix.length, i, j)], value, 1e-9);
+    it("has the shots, means and correlators an independent program found", () => {
+      expect([...traces.shotsPerTime]).toEqual(deterministic.shotsPerTime);
+      deterministic.mean.forEach((ofTime, k) =>
+        ofTime.forEach((mean, i) => expectRelative(results[k].mean[i], mean, deterministic.tolerance)),
+      );
+      for (const [k, matrix] of Object.entries(deterministic.correlators_at)) {
+        matrix.forEach((row, i) =>
+          row.forEach((value, j) => {
+            if (i !== j) expectRelative(results[Number(k)].value[pairIndex(matrix.length, i, j)], value, 1e-9);
+          }),
+        );
+      }
+    });
+
+    it("has its traces and distances", () => {
+      const times = deterministic.times_us.length;
+      deterministic.distances.forEach((distance, q) => expectRelative(plan.distances[q], distance, 1e-9));
+      deterministic.traces.forEach((ofTrace, q) =>
+        ofTrace.forEach((value, k) => expectRelative(traces.value[q * times + k], value, deterministic.tolerance)),
+      );
+    });
+
+    it("has its trace errors within the noise of both bootstraps", () => {
+      const times = deterministic.times_us.length;
+      const noise = 7 * Math.sqrt(1 / (2 * statistical.B) + 1 / (2 * REPLICATES));
+      let worst = 0;
+      statistical.traceError.forEach((ofTrace, q) =>
+        ofTrace.forEach((error, k) => {
+          const found = traces.error[q * times + k];
+          if (error === 0) expect(found).toBe(0);
+          else worst = Math.max(worst, Math.abs(found - error) / error);
         }),
       );
-    }
-  });
-
-  it("has its traces and distances", () => {
-    const times = deterministic.times_us.length;
-    deterministic.distances.forEach((distance, q) => expectRelative(plan.distances[q], distance, 1e-9));
-    deterministic.traces.forEach((ofTrace, q) =>
-      ofTrace.forEach((value, k) => expectRelative(traces.value[q * times + k], value, deterministic.tolerance)),
-    );
-  });
-
-  it("has its trace errors within the noise of both bootstraps", () => {
-    const times = deterministic.times_us.length;
-    const noise = 7 * Math.sqrt(1 / (2 * statistical.B) + 1 / (2 * REPLICATES));
-    let worst = 0;
-    statistical.traceError.forEach((ofTrace, q) =>
-      ofTrace.forEach((error, k) => {
-        const found = traces.error[q * times + k];
-        if (error === 0) expect(found).toBe(0);
-        else worst = Math.max(worst, Math.abs(found - error) / error);
-      }),
-    );
-    expect(worst).toBeLessThan(noise);
-  });
-});
+      expect(worst).toBeLessThan(noise);
+    });
+  },
+);
 
 describe("collected traces", () => {
   it("come out the same from results in any order, and refuse a missing time", () => {

@@ -1,6 +1,11 @@
 import { describe, expect, it } from "vitest";
 import { listPairs } from "@/lib/science/correlators/pairs";
-import { planDistanceTraces, planReferenceTraces, type SitePositions, type TracePlan } from "@/lib/science/correlators/trace-plan";
+import {
+  planDistanceTraces,
+  planReferenceTraces,
+  type SitePositions,
+  type TracePlan,
+} from "@/lib/science/correlators/trace-plan";
 
 function chain(x: number[]): SitePositions {
   return { x: Float64Array.from(x), y: null };
