@@ -23,7 +23,6 @@ const OTHERS: [string, string][] = [
   ["\xfd7zXZ", "an xz archive"],
   ["(\xb5/\xfd", "a zstd archive"],
   ["7z\xbc\xaf", "a 7z archive"],
-  ["MATLAB 5.0", "a MATLAB file"],
   ["\x1f\x8b", "gzip within gzip"],
 ];
 

@@ -12,7 +12,7 @@ export class TableRow {
   private readonly filename: string;
   /** One cell more than columns, so that a long row is noticed. */
   private readonly bounds: Int32Array;
-  private timeText = "";
+  private timeText: string | null = null;
   private time_us = NaN;
 
   constructor(rows: RowCursor, head: TableHead, filename: string) {

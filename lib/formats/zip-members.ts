@@ -12,15 +12,16 @@ export interface ZipMember extends StreamedBytes {
   name: string;
 }
 
-/** Lists the members of a ZIP archive, or says where it is damaged. */
+/** Lists the members of a ZIP archive, or says where it is damaged. Names are as given: none is safe as a path. */
 export async function listZipMembers(source: ByteSource): Promise<ZipMember[] | Problem> {
   const reader = new SourceReader(source);
   try {
-    const zip = await fromRandomAccessReaderPromise(reader, source.size, { autoClose: false });
+    const zip = await fromRandomAccessReaderPromise(reader, source.size, { autoClose: false, decodeStrings: false });
     const members: ZipMember[] = [];
     for await (const entry of zip.eachEntry()) {
       if (members.length === MOST_MEMBERS) return invalidAt("file", `holds more than ${MOST_MEMBERS} members`);
-      members.push({ name: entry.fileName, size: entry.uncompressedSize, stream: () => memberBytes(zip, reader, entry) });
+      const name = new TextDecoder().decode(entry.fileNameRaw);
+      members.push({ name, size: entry.uncompressedSize, stream: () => memberBytes(zip, reader, entry, name) });
     }
     return members;
   } catch (error) {
@@ -29,7 +30,7 @@ export async function listZipMembers(source: ByteSource): Promise<ZipMember[] | 
 }
 
 /** Expands one member; yauzl holds it to its declared size, and its CRC-32 is checked at the end. */
-async function* memberBytes(zip: ZipFile, reader: SourceReader, entry: Entry): AsyncGenerator<Uint8Array | Problem> {
+async function* memberBytes(zip: ZipFile, reader: SourceReader, entry: Entry, name: string): AsyncGenerator<Uint8Array | Problem> {
   let sum = 0;
   try {
     const bytes = await zip.openReadStreamPromise(entry);
@@ -38,10 +39,10 @@ async function* memberBytes(zip: ZipFile, reader: SourceReader, entry: Entry): A
       yield chunk;
     }
   } catch (error) {
-    yield damaged(reader, error, entry.fileName);
+    yield damaged(reader, error, name);
     return;
   }
-  if (sum !== entry.crc32) yield invalidAt("file", `${entry.fileName} is damaged: its checksum is wrong`);
+  if (sum !== entry.crc32) yield invalidAt("file", `${name} is damaged: its checksum is wrong`);
 }
 
 /** Tells a damaged archive (a Problem) from a source that failed (thrown on). */
