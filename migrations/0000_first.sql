@@ -142,6 +142,7 @@ CREATE TABLE `run_versions` (
 	`positions` json,
 	`count_type` enum('uint16','float32') NOT NULL,
 	`times_us` json NOT NULL,
+	`time_slots` json NOT NULL,
 	`shots_per_time` json NOT NULL,
 	`shots_set_aside` json NOT NULL,
 	`calibration_dark_shots` int NOT NULL,
@@ -189,12 +190,12 @@ CREATE TABLE `setup_keys` (
 CREATE TABLE `shot_blocks` (
 	`run_id` char(24) character set ascii collate ascii_bin NOT NULL,
 	`version` int NOT NULL,
-	`time_index` int NOT NULL,
+	`time_slot` int NOT NULL,
 	`seq` int NOT NULL,
 	`shots` int NOT NULL,
 	`count_type` enum('uint16','float32') NOT NULL,
 	`data` mediumblob NOT NULL,
-	CONSTRAINT `shot_blocks_run_id_version_time_index_seq_pk` PRIMARY KEY(`run_id`,`version`,`time_index`,`seq`)
+	CONSTRAINT `shot_blocks_run_id_version_time_slot_seq_pk` PRIMARY KEY(`run_id`,`version`,`time_slot`,`seq`)
 );
 --> statement-breakpoint
 CREATE TABLE `site_histograms` (

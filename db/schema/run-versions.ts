@@ -25,6 +25,8 @@ export const runVersions = mysqlTable(
     countType: mysqlEnum(["uint16", "float32"]).notNull(),
     /** `[k]`, µs */
     timesUs: jsonText<number[]>()().notNull(),
+    /** `[k]`, the `timeSlot` under which the blocks of that time are kept. */
+    timeSlots: jsonText<number[]>()().notNull(),
     /** `[k]`, kept shots M_k */
     shotsPerTime: jsonText<number[]>()().notNull(),
     shotsSetAside: jsonText<Record<string, number>>()().notNull(),

@@ -1,20 +1,25 @@
 import { int, mysqlEnum, mysqlTable, primaryKey } from "drizzle-orm/mysql-core";
 import { id, mediumBlob } from "./columns";
 
+/** Calibration shots belong to no time; their blocks are kept under these slots. */
+export const DARK_SLOT = -1;
+export const BRIGHT_SLOT = -2;
+
 /**
- * Kept shots of one evolution time (or one calibration role, timeIndex −1 dark, −2 bright), ordered by archive and shot
- * number. `data` is a deflated little-endian typed array `[shot][site]`.
+ * Kept shots of one evolution time, ordered by archive and shot number. Slots are numbered as times appear while reading;
+ * `run_versions.time_slots` says which is which. `data` is deflated: shot numbers as float64 `[shot]`, then counts `[shot][site]`,
+ * both little-endian.
  */
 export const shotBlocks = mysqlTable(
   "shot_blocks",
   {
     runId: id().notNull(),
     version: int().notNull(),
-    timeIndex: int().notNull(),
+    timeSlot: int().notNull(),
     seq: int().notNull(),
     shots: int().notNull(),
     countType: mysqlEnum(["uint16", "float32"]).notNull(),
     data: mediumBlob().notNull(),
   },
-  (table) => [primaryKey({ columns: [table.runId, table.version, table.timeIndex, table.seq] })],
+  (table) => [primaryKey({ columns: [table.runId, table.version, table.timeSlot, table.seq] })],
 );

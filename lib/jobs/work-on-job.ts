@@ -6,6 +6,7 @@ import { logUnexpected } from "@/lib/http/log-unexpected";
 import { problem, type Problem } from "@/lib/problem";
 import { MOST_ATTEMPTS } from "./claim-job";
 import { cancelHeld, failHeld, finishHeld, heartbeat, LockLost, refuseHeld, returnHeld, type HeldJob } from "./held-job";
+import { TryLater } from "./run-lock";
 import type { JobContext, JobHandler, JobRow, RefusedJob } from "./job-context";
 
 const HEARTBEAT_MS = 3_000;
@@ -50,13 +51,14 @@ export async function workOnJob(job: JobRow, lockOwner: string, { database, pool
   });
 }
 
-type Outcome = { kind: "done" } | { kind: "refused"; refused: RefusedJob } | { kind: "stopped"; stop: Stop } | { kind: "fault" };
+type Outcome = { kind: "done" } | { kind: "refused"; refused: RefusedJob } | { kind: "stopped"; stop: Stop } | { kind: "later"; delay_ms: number } | { kind: "fault" };
 
 async function attempt(handler: JobHandler, job: JobRow, context: JobContext, stop: AbortController): Promise<Outcome> {
   try {
     const refused = await handler(job, context);
     return refused ? { kind: "refused", refused } : { kind: "done" };
   } catch (error) {
+    if (error instanceof TryLater) return { kind: "later", delay_ms: error.delay_ms };
     if (error instanceof LockLost) return { kind: "stopped", stop: "lock lost" };
     if (stop.signal.aborted) return { kind: "stopped", stop: stop.signal.reason as Stop };
     logUnexpected(`job ${job.kind} ${job.id}`, error);
@@ -68,6 +70,7 @@ async function settle(database: Database, held: HeldJob, job: JobRow, outcome: O
   if (outcome.kind === "refused") return refuseHeld(database, held, outcome.refused);
   if (outcome.kind === "stopped" && outcome.stop === "cancelled") return cancelHeld(database, held);
   if (outcome.kind === "stopped" && outcome.stop === "worker ends") return returnHeld(database, held, job.attempts - 1, 0);
+  if (outcome.kind === "later") return returnHeld(database, held, job.attempts - 1, outcome.delay_ms);
   if (outcome.kind !== "fault") return;
   if (job.attempts >= MOST_ATTEMPTS) return failHeld(database, held, exhausted());
   return returnHeld(database, held, job.attempts, RETRY_DELAY_MS * job.attempts);

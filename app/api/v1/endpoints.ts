@@ -1,7 +1,26 @@
 import * as accounts from "@/lib/accounts/account-endpoints";
+import * as archives from "@/lib/archives/archive-endpoints";
 import { healthEndpoint } from "@/lib/health/health-endpoint";
 import type { Endpoint } from "@/lib/http/endpoint";
 import { openapiEndpoint } from "@/lib/http/openapi-endpoint";
+import { cancelJobEndpoint, getJobEndpoint, jobEventsEndpoint, listRunJobsEndpoint } from "@/lib/jobs/job-endpoints";
+import { brightnessEndpoint, createRunEndpoint, deleteRunEndpoint, getRunEndpoint, histogramsEndpoint, listRunsEndpoint, updateRunEndpoint } from "@/lib/runs/run-endpoints";
 
 /** Every call of the HTTP API. A route that is missing here, or the other way round, fails the suite. */
-export const ENDPOINTS: Endpoint[] = [...Object.values(accounts), healthEndpoint, openapiEndpoint];
+export const ENDPOINTS: Endpoint[] = [
+  ...Object.values(accounts),
+  createRunEndpoint,
+  listRunsEndpoint,
+  getRunEndpoint,
+  updateRunEndpoint,
+  deleteRunEndpoint,
+  histogramsEndpoint,
+  brightnessEndpoint,
+  listRunJobsEndpoint,
+  ...Object.values(archives),
+  getJobEndpoint,
+  cancelJobEndpoint,
+  jobEventsEndpoint,
+  healthEndpoint,
+  openapiEndpoint,
+];
