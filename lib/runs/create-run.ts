@@ -4,7 +4,7 @@ import { newId } from "@/db/new-id";
 import { runs } from "@/db/schema/runs";
 import { refusal, type Actor } from "@/lib/accounts/policy";
 import type { Problem } from "@/lib/problem";
-import { getRun } from "./get-run";
+import { getRunInGroup } from "./get-run";
 import type { CreateRunInput } from "./run-schemas";
 import type { ShownRun } from "./show-run";
 
@@ -32,5 +32,5 @@ export async function createRun(actor: Actor, input: CreateRunInput): Promise<Sh
       createdAt: now,
       updatedAt: now,
     });
-  return getRun(actor, id);
+  return getRunInGroup(actor, id);
 }

@@ -5,7 +5,7 @@ import { runs } from "@/db/schema/runs";
 import { refusal, type Actor } from "@/lib/accounts/policy";
 import { invalidAt, isProblem, type Problem } from "@/lib/problem";
 import { findCurrentVersion, findRunInGroup } from "./find-run";
-import { getRun } from "./get-run";
+import { getRunInGroup } from "./get-run";
 import type { UpdateRunInput } from "./run-schemas";
 import type { ShownRun } from "./show-run";
 
@@ -21,5 +21,5 @@ export async function updateRun(actor: Actor, runId: string, input: UpdateRunInp
   }
   const change = { ...input, ...(input.campaign === "" && { campaign: null }), updatedAt: new Date() };
   await database().update(runs).set(change).where(and(eq(runs.id, runId), eq(runs.groupId, actor.groupId)));
-  return getRun(actor, runId);
+  return getRunInGroup(actor, runId);
 }
