@@ -126,10 +126,11 @@ CREATE TABLE `rate_limits` (
 CREATE TABLE `result_arrays` (
 	`analysis_id` char(24) character set ascii collate ascii_bin NOT NULL,
 	`name` varchar(60) NOT NULL,
+	`part` int NOT NULL,
 	`dtype` enum('float64','float32','uint8','uint32','json') NOT NULL,
 	`shape` json NOT NULL,
-	`data` longblob NOT NULL,
-	CONSTRAINT `result_arrays_analysis_id_name_pk` PRIMARY KEY(`analysis_id`,`name`)
+	`data` mediumblob NOT NULL,
+	CONSTRAINT `result_arrays_analysis_id_name_part_pk` PRIMARY KEY(`analysis_id`,`name`,`part`)
 );
 --> statement-breakpoint
 CREATE TABLE `run_versions` (

@@ -34,15 +34,23 @@ export interface AnalysisProvenance {
   programVersion: string;
 }
 
-/** Key figures for tables and strips; null where there is no fit. */
+interface SummaryFigure {
+  value: number | null;
+  error: number | null;
+  low: number | null;
+  high: number | null;
+}
+
+/** Key figures for tables and strips; null where there is no fit. An `unbounded` interval has no upper end. */
 export interface AnalysisSummary {
   verdict: string;
-  beta: { value: number | null; error: number | null; low: number | null; high: number | null; unbounded: boolean } | null;
-  gamma: { value: number; error: number; low: number; high: number } | null;
-  v_sites_per_ms: { value: number; error: number; low: number; high: number } | null;
+  verdictSentence: string;
+  beta: (SummaryFigure & { unbounded: boolean }) | null;
+  gamma: SummaryFigure | null;
+  v_sites_per_ms: (SummaryFigure & { unbounded: boolean }) | null;
   resolvedPoints: number;
   points: number;
-  warnings: { code: string; message: string }[];
+  warnings: string[];
 }
 
 export const analyses = mysqlTable(

@@ -21,8 +21,5 @@ export const jsonText = <T>() =>
 /** Up to 16 MiB − 1 of bytes; written and read through prepared statements only (see db/blobs.ts). */
 export const mediumBlob = customType<{ data: Buffer }>({ dataType: () => "mediumblob" });
 
-/** Up to 4 GiB − 1 of bytes; written and read through prepared statements only (see db/blobs.ts). */
-export const longBlob = customType<{ data: Buffer }>({ dataType: () => "longblob" });
-
 /** A moment in UTC with milliseconds. */
 export const moment = () => datetime({ fsp: 3, mode: "date" });

@@ -1,5 +1,5 @@
 import type { NpyArray } from "@/lib/formats/npy-array";
-import { itemReader } from "@/lib/formats/npy-items";
+import { itemsAt } from "@/lib/formats/npy-items";
 import { spool } from "@/lib/formats/spool";
 import { invalidAt, isProblem, type Problem } from "@/lib/problem";
 import type { ByteStream } from "@/lib/formats/byte-stream";
@@ -26,7 +26,6 @@ export async function* arrayRows(array: NpyArray): AsyncGenerator<RowBlock | Pro
 
 async function* contiguousRows(array: NpyArray, rows: number, sites: number): AsyncGenerator<RowBlock | Problem> {
   const { header, bytes, prefix } = array;
-  const read = itemReader(header);
   const rowBytes = sites * header.itemBytes;
   let first = 0;
   for await (const block of rowAligned(bytes.stream(), header.dataOffset, rowBytes)) {
@@ -35,10 +34,7 @@ async function* contiguousRows(array: NpyArray, rows: number, sites: number): As
       return;
     }
     const count = Math.min(rows - first, block.length / rowBytes);
-    const view = new DataView(block.buffer, block.byteOffset, block.byteLength);
-    const values = new Float64Array(count * sites);
-    for (let n = 0, at = 0; n < values.length; n++, at += header.itemBytes) values[n] = read(view, at);
-    yield { first, rows: count, values };
+    yield { first, rows: count, values: itemsAt(header, block, count * sites) };
     first += count;
   }
   if (first < rows) yield invalidAt(`${prefix}file`, `the data end early: ${first} shots of ${rows}`);
@@ -78,7 +74,6 @@ async function* fortranRows(array: NpyArray, rows: number, sites: number): Async
     return;
   }
   try {
-    const read = itemReader(header);
     const blockRows = Math.max(1, Math.floor(BLOCK_BYTES / (8 * sites)));
     for (let first = 0; first < rows; first += blockRows) {
       const count = Math.min(blockRows, rows - first);
@@ -89,8 +84,8 @@ async function* fortranRows(array: NpyArray, rows: number, sites: number): Async
           yield invalidAt(`${prefix}file`, "the data end early");
           return;
         }
-        const view = new DataView(run.buffer, run.byteOffset, run.byteLength);
-        for (let r = 0; r < count; r++) values[r * sites + i] = read(view, r * header.itemBytes);
+        const column = itemsAt(header, run, count);
+        for (let r = 0; r < count; r++) values[r * sites + i] = column[r];
       }
       yield { first, rows: count, values };
     }

@@ -26,7 +26,7 @@ export async function* readArrayShots(
     for (let r = 0; r < block.rows; r++) {
       current = block.first + r;
       builder.row.set(block.values.subarray(r * sites, (r + 1) * sites));
-      const unfit = builder.row.findIndex((count) => !fitsCount(count));
+      const unfit = array.header.kind === "f" ? builder.row.findIndex((count) => !fitsCount(count)) : -1;
       if (unfit >= 0) return invalidAt(layout.placeOf(current, unfit), `${builder.row[unfit]} is beyond what a count can be`);
       builder.push(layout.timeOf(current), layout.numberOf(current));
     }

@@ -1,3 +1,4 @@
+import { decimalNumber } from "@/lib/formats/decimal-text";
 import { plainStream } from "@/lib/formats/gunzip";
 import { lineBlocks } from "@/lib/formats/line-blocks";
 import { RowCursor } from "@/lib/formats/row-cursor";
@@ -80,14 +81,24 @@ class CountRowReader {
     if (typeof shot !== "number") return shot;
     const count = cells.count(this.countColumn);
     if (typeof count !== "number") return count;
-    const plain = cells.wholeNumber(this.site);
-    row.site = plain >= 0 ? plain : cells.text(this.site);
+    row.site = this.siteInRow();
     if (row.site === "") return invalidAt(cells.place(this.site), "no site is named");
     row.time_us = time_us;
     row.shot = shot;
     row.count = count;
     return null;
   }
+
+  private siteInRow(): string | number {
+    const plain = this.cells.wholeNumber(this.site);
+    return plain >= 0 ? plain : sameSite(this.cells.text(this.site));
+  }
+}
+
+/** Gives 1, "1" and 1.0 the same whole number, so that one site written in several ways stays one. */
+function sameSite(text: string): string | number {
+  const number = decimalNumber(text);
+  return number !== null && Number.isSafeInteger(number) ? number : text;
 }
 
 function openReader(rows: RowCursor, options: ReadOptions): CountRowReader | Problem {

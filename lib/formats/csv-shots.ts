@@ -4,7 +4,7 @@ import { lineBlocks } from "@/lib/formats/line-blocks";
 import { RowCursor } from "@/lib/formats/row-cursor";
 import type { ReadOptions, ShotReader } from "@/lib/formats/shot-batch";
 import { ShotNumberRegister } from "@/lib/formats/shot-number-register";
-import { readTableHead } from "@/lib/formats/table-head";
+import { looksLikeLongForm, readTableHead } from "@/lib/formats/table-head";
 import { TableRow } from "@/lib/formats/table-row";
 import { invalidAt, isProblem, type Problem } from "@/lib/problem";
 
@@ -77,6 +77,7 @@ function openTable(rows: RowCursor, options: ReadOptions): ShotTable | Problem {
   const head = readTableHead(rows, options.filename);
   if (isProblem(head)) return head;
   const header = `${options.filename} header`;
+  if (looksLikeLongForm(head)) return invalidAt(header, "columns site and count are those of one row a count, which needs time_us, shot, site, count and no other");
   if (head.time === null && options.role === "shots") {
     return invalidAt(header, "no time column; name it time_us, time_ms, time_s or time (µs)");
   }

@@ -1,5 +1,5 @@
 import { firstBytes, type StreamedBytes } from "@/lib/formats/byte-stream";
-import { itemReader } from "@/lib/formats/npy-items";
+import { itemsAt } from "@/lib/formats/npy-items";
 import { NPY_HEAD_BYTES, parseNpyHeader, type NpyHeader } from "@/lib/formats/npy-header";
 import { invalidAt, isProblem, type Problem } from "@/lib/problem";
 
@@ -30,8 +30,6 @@ export async function smallValues(array: NpyArray): Promise<Float64Array | Probl
   if (length > MOST_SMALL_VALUES) return invalidAt(name, `${length} numbers are too many here`);
   const all = await firstBytes(bytes.stream(), bytes.size);
   if (isProblem(all)) return all;
-  const view = new DataView(all.buffer, all.byteOffset, all.byteLength);
   if (all.length < header.dataOffset + length * header.itemBytes) return invalidAt(`${array.prefix}file`, "the data end early");
-  const read = itemReader(header);
-  return Float64Array.from({ length }, (_, n) => read(view, header.dataOffset + n * header.itemBytes));
+  return itemsAt(header, all.subarray(header.dataOffset), length);
 }

@@ -42,6 +42,12 @@ export function isLongForm(head: TableHead): boolean {
   return head.time !== null && head.shot >= 0 && names.length === 2 && names.includes("site") && names.includes("count");
 }
 
+/** Whether there are columns named site and count: read as sites of one row a shot they would give numbers without sense. */
+export function looksLikeLongForm(head: TableHead): boolean {
+  const names = head.others.map((column) => head.columns[column].toLowerCase());
+  return names.includes("site") && names.includes("count");
+}
+
 function arranged(separator: number, columns: string[], filename: string): TableHead | Problem {
   const names = columns.map((name) => name.toLowerCase());
   const times = names.flatMap((name, column) => (TIME_COLUMNS.has(name) ? [column] : []));

@@ -1,11 +1,12 @@
 import "server-only";
 import { and, eq, inArray, sql } from "drizzle-orm";
+import { database } from "@/db/connection";
 import { jobs } from "@/db/schema/jobs";
 import { runVersions } from "@/db/schema/run-versions";
 import { runs } from "@/db/schema/runs";
 import type { Executor } from "@/db/transaction";
 import type { Actor } from "@/lib/accounts/policy";
-import { problem, type Problem } from "@/lib/problem";
+import { isProblem, problem, type Problem } from "@/lib/problem";
 
 export type RunRow = typeof runs.$inferSelect;
 export type RunVersionRow = typeof runVersions.$inferSelect;
@@ -14,6 +15,12 @@ export type RunVersionRow = typeof runVersions.$inferSelect;
 export async function findRunInGroup(executor: Executor, actor: Pick<Actor, "groupId">, runId: string): Promise<RunRow | Problem> {
   const [row] = await executor.select().from(runs).where(and(eq(runs.id, runId), eq(runs.groupId, actor.groupId)));
   return row ?? problem("not-found", "There is no such run.");
+}
+
+/** For `serve`: the Problem that a path's run is not there for this member, before anything sent with the call is looked at. */
+export async function absentRun({ actor, params }: { actor: Pick<Actor, "groupId">; params: { runId: string } }): Promise<Problem | null> {
+  const run = await findRunInGroup(database(), actor, params.runId);
+  return isProblem(run) ? run : null;
 }
 
 /** Returns a run's current version, or null before the first archive has been read. */

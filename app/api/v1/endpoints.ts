@@ -1,5 +1,7 @@
 import * as accounts from "@/lib/accounts/account-endpoints";
+import * as analyses from "@/lib/analyses/analysis-endpoints";
 import * as archives from "@/lib/archives/archive-endpoints";
+import * as detections from "@/lib/detections/detection-endpoints";
 import { healthEndpoint } from "@/lib/health/health-endpoint";
 import type { Endpoint } from "@/lib/http/endpoint";
 import { openapiEndpoint } from "@/lib/http/openapi-endpoint";
@@ -18,6 +20,9 @@ export const ENDPOINTS: Endpoint[] = [
   brightnessEndpoint,
   listRunJobsEndpoint,
   ...Object.values(archives),
+  ...[detections.createDetectionEndpoint, detections.listDetectionsEndpoint, detections.getDetectionEndpoint],
+  ...[analyses.createAnalysisEndpoint, analyses.listAnalysesEndpoint, analyses.getAnalysisEndpoint],
+  ...[analyses.correlatorsEndpoint, analyses.tracesEndpoint, analyses.frontEndpoint, analyses.figureEndpoint],
   getJobEndpoint,
   cancelJobEndpoint,
   jobEventsEndpoint,

@@ -1,0 +1,13 @@
+import { z } from "zod";
+
+const ThresholdField = z.number().min(-1e6).max(1e6);
+
+export const CreateDetectionInput = z
+  .strictObject({
+    method: z.enum(["fixed", "mixture", "calibration"]),
+    threshold: ThresholdField.optional().meta({ description: "One for all sites; bright means more counts than this" }),
+    thresholds: z.array(ThresholdField).min(1).max(4096).optional().meta({ description: "One per site" }),
+    label: z.string().trim().max(120).optional(),
+  })
+  .refine((input) => input.threshold === undefined || input.thresholds === undefined, { path: ["thresholds"], message: "give either threshold or thresholds, not both" });
+export type CreateDetectionInput = z.output<typeof CreateDetectionInput>;
