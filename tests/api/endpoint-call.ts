@@ -7,6 +7,11 @@ export function callEndpoint(endpoint: Endpoint, ids: PreparedIds, as: Credentia
   return call(endpoint.method, pathOn(endpoint, ids), { as, ...exampleBody(endpoint, ids) });
 }
 
+/** Calls an endpoint with a body that cannot be read. */
+export function callWithBrokenBody(endpoint: Endpoint, ids: PreparedIds, as: Credentials): Promise<Response> {
+  return call(endpoint.method, pathOn(endpoint, ids), { as, body: "{", headers: { "content-type": "application/json" } });
+}
+
 /** Returns whether the path names a thing that belongs to a group. */
 export function namesAThing(endpoint: Endpoint): boolean {
   return endpoint.path.includes("{");

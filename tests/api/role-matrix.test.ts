@@ -8,7 +8,7 @@ import type { TokenScope } from "@/db/schema/tokens";
 import { POLICY, ROLES, type Role } from "@/lib/accounts/policy";
 import type { Endpoint } from "@/lib/http/endpoint";
 import { problemIn, signedIn, tokenOf, type Credentials } from "./client";
-import { callEndpoint, namesAThing } from "./endpoint-call";
+import { callEndpoint, callWithBrokenBody, namesAThing } from "./endpoint-call";
 import { makeGroup, makeSignedIn, PASSWORD, type SignedInMember } from "./factories";
 import { prepareRows, type PreparedIds } from "./prepared-rows";
 
@@ -114,6 +114,16 @@ describe.each(named(ENDPOINTS.filter(namesAThing)))("$name", ({ endpoint }) => {
     const theirs = await problemIn(await callEndpoint(endpoint, untouched, as));
     expect(await problemIn(await callEndpoint(endpoint, sameIdFor(newId()), as))).toEqual(theirs);
     expect((await problemIn(await callEndpoint(endpoint, sameIdFor("%27"), as))).status).toBe(404);
+  });
+});
+
+describe.each(named(ENDPOINTS.filter((endpoint) => endpoint.body !== null && endpoint.action !== "public")))("$name", ({ endpoint }) => {
+  it("looks at what was sent last: after who asks, whether they may, and whether the thing is theirs", async () => {
+    const status = async (as: Credentials) => (await problemIn(await callWithBrokenBody(endpoint, untouched, as))).status;
+    expect(await status({})).toBe(401);
+    if (expectedOfRole(endpoint, "reader") === 403) expect(await status(ours.reader.credentials)).toBe(403);
+    expect(await status(foreign.owner.credentials)).toBe(namesAThing(endpoint) ? 404 : 400);
+    expect(await status(ours.owner.credentials)).toBe(400);
   });
 });
 
