@@ -18,7 +18,7 @@ export function namesAThing(endpoint: Endpoint): boolean {
 }
 
 function pathOn(endpoint: Endpoint, ids: PreparedIds): string {
-  const path = endpoint.path.replaceAll(/\/(\w+)\/\{(\w+)\}/g, (_whole, collection: string, parameter: string) => {
+  const path = endpoint.path.replace("/figures/{figure}", "/figures/front.svg").replaceAll(/\/(\w+)\/\{(\w+)\}/g, (_whole, collection: string, parameter: string) => {
     if (!isPrepared(collection, ids)) throw new Error(`${endpoint.path}: prepare an id for {${parameter}} in prepared-rows.ts`);
     return `/${collection}/${ids[collection]}`;
   });
