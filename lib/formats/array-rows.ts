@@ -5,6 +5,8 @@ import { invalidAt, isProblem, type Problem } from "@/lib/problem";
 import type { ByteStream } from "@/lib/formats/byte-stream";
 
 const BLOCK_BYTES = 1_048_576;
+/** In Fortran order a block takes one read a site, so blocks are larger. */
+const FORTRAN_BLOCK_BYTES = 16_777_216;
 
 /** Some shots of a counts array: `values` is `[row][site]`; row `r` is shot `first + r` in the order of the file. */
 export interface RowBlock {
@@ -74,7 +76,7 @@ async function* fortranRows(array: NpyArray, rows: number, sites: number): Async
     return;
   }
   try {
-    const blockRows = Math.max(1, Math.floor(BLOCK_BYTES / (8 * sites)));
+    const blockRows = Math.max(1, Math.floor(FORTRAN_BLOCK_BYTES / (8 * sites)));
     for (let first = 0; first < rows; first += blockRows) {
       const count = Math.min(blockRows, rows - first);
       const values = new Float64Array(count * sites);

@@ -54,6 +54,8 @@ describe("tables with one row a shot", () => {
     ["time_us\ta\n5\t2,5\n", "shots.csv line 2 column a"],
     ["time_us,a\n5,1e39\n", "shots.csv line 2 column a"],
     ["# nothing\n\n", "file"],
+    ["time_us,site,count\n5,0,3\n5,1,4\n", "shots.csv header"],
+    ["time_us,shot,site,count,gate\n5,0,0,3,1\n", "shots.csv header"],
   ])("refuses %j at %s", async (content, where) => {
     expect(await refusals(text(content))).toEqual([where]);
   });
@@ -84,6 +86,13 @@ describe("tables with one row a count", () => {
     const { summary, shots } = await readGood(text("time_us,shot,site,count\n5,0,right,1\n5,0,left,2\n5,1,left,3\n"));
     expect(summary.siteNames).toEqual(["right", "left"]);
     expect(shots.map(({ counts, missing }) => [counts, missing])).toEqual([[[1, 2], false], [[null, 3], true]]);
+  });
+
+  it("takes a site for the same however its number is written", async () => {
+    const { summary, shots } = await readGood(text('time_us,shot,site,count\n5,0,0,1\n5,0,"1",2\n5,1,"0",3\n5,1,1.0,4\n5,2, 0,5\n5,2,01,6\n'));
+    expect(summary.siteNames).toEqual(["0", "1"]);
+    expect(shots.map(({ counts }) => counts)).toEqual([[1, 2], [3, 4], [5, 6]]);
+    expect(await refusals(text('time_us,shot,site,count\n5,0,1,1\n5,0,1.0,2\n'))).toEqual(["shots.csv line 3"]);
   });
 
   it.each([
