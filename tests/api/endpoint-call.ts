@@ -2,9 +2,9 @@ import type { Endpoint } from "@/lib/http/endpoint";
 import { call, type Credentials } from "./client";
 import type { PreparedIds } from "./prepared-rows";
 
-/** Calls an endpoint with its own example, on the given things. */
-export function callEndpoint(endpoint: Endpoint, ids: PreparedIds, as: Credentials): Promise<Response> {
-  return call(endpoint.method, pathOn(endpoint, ids), { as, ...exampleBody(endpoint, ids) });
+/** Calls an endpoint with its own example, on the given things; what the body refers to may be others. */
+export function callEndpoint(endpoint: Endpoint, ids: PreparedIds, as: Credentials, referredTo = ids): Promise<Response> {
+  return call(endpoint.method, pathOn(endpoint, ids), { as, ...exampleBody(endpoint, referredTo) });
 }
 
 /** Calls an endpoint with a body that cannot be read. */
@@ -15,6 +15,11 @@ export function callWithBrokenBody(endpoint: Endpoint, ids: PreparedIds, as: Cre
 /** Returns whether the path names a thing that belongs to a group. */
 export function namesAThing(endpoint: Endpoint): boolean {
   return endpoint.path.includes("{");
+}
+
+/** Returns whether the example's body refers to a prepared thing. */
+export function refersToAThing({ example }: Endpoint): boolean {
+  return typeof example === "object" && example !== null && "detectionId" in example;
 }
 
 function pathOn(endpoint: Endpoint, ids: PreparedIds): string {
@@ -36,8 +41,7 @@ function exampleBody(endpoint: Endpoint, ids: PreparedIds): { json?: unknown; bo
 
 /** A body's reference, such as `detectionId`, is put on the prepared thing. */
 function withPreparedIds(example: unknown, ids: PreparedIds): unknown {
-  if (typeof example !== "object" || example === null) return example;
-  return "detectionId" in example ? { ...example, detectionId: ids.detections } : example;
+  return typeof example === "object" && example !== null && "detectionId" in example ? { ...example, detectionId: ids.detections } : example;
 }
 
 function isPrepared(collection: string, ids: PreparedIds): collection is keyof PreparedIds {

@@ -8,7 +8,7 @@ import type { TokenScope } from "@/db/schema/tokens";
 import { POLICY, ROLES, type Role } from "@/lib/accounts/policy";
 import type { Endpoint } from "@/lib/http/endpoint";
 import { problemIn, signedIn, tokenOf, type Credentials } from "./client";
-import { callEndpoint, callWithBrokenBody, namesAThing } from "./endpoint-call";
+import { callEndpoint, callWithBrokenBody, namesAThing, refersToAThing } from "./endpoint-call";
 import { makeGroup, makeSignedIn, PASSWORD, type SignedInMember } from "./factories";
 import { prepareRows, type PreparedIds } from "./prepared-rows";
 
@@ -124,6 +124,17 @@ describe.each(named(ENDPOINTS.filter((endpoint) => endpoint.body !== null && end
     if (expectedOfRole(endpoint, "reader") === 403) expect(await status(ours.reader.credentials)).toBe(403);
     expect(await status(foreign.owner.credentials)).toBe(namesAThing(endpoint) ? 404 : 400);
     expect(await status(ours.owner.credentials)).toBe(400);
+  });
+});
+
+describe.each(named(ENDPOINTS.filter(refersToAThing)))("$name", ({ endpoint }) => {
+  it("does not reach another group's thing by a reference in the body", async () => {
+    const theirs = await prepareRows(foreign.owner);
+    const as = foreign.owner.credentials;
+    const absent = await problemIn(await callEndpoint(endpoint, theirs, as, sameIdFor(newId())));
+    expect([404, 422]).toContain(absent.status);
+    expect(await problemIn(await callEndpoint(endpoint, theirs, as, untouched))).toEqual(absent);
+    expect((await callEndpoint(endpoint, theirs, as)).ok).toBe(true);
   });
 });
 

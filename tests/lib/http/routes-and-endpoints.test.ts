@@ -11,7 +11,7 @@ function pathOf(file: string): string {
 }
 
 /** All but the one that answers every other path: nothing is there to guard. */
-const routeFiles = readdirSync(API, { recursive: true, encoding: "utf8" }).filter((file) => file.endsWith("/route.ts") && file !== "[...unknown]/route.ts");
+const routeFiles = readdirSync(API, { recursive: true, encoding: "utf8" }).filter((file) => /\/route\.tsx?$/.test(file) && file !== "[...unknown]/route.ts");
 const served = routeFiles.flatMap((file) => {
   const source = readFileSync(path.join(API, file), "utf8");
   return [...source.matchAll(/^export (?:const|async function|function) (GET|HEAD|POST|PUT|PATCH|DELETE|OPTIONS)\b(.*)$/gm)].map(
