@@ -3,7 +3,8 @@ import { Readable } from "node:stream";
 import { pipeline } from "node:stream/promises";
 import type { ReadableStream as WebStream } from "node:stream/web";
 import busboy from "busboy";
-import type { Database } from "@/db/connection";
+import { database as openDatabase, type Database } from "@/db/connection";
+import type { Actor } from "@/lib/accounts/policy";
 import { isProblem, problem, type Problem } from "@/lib/problem";
 import { safeFilename } from "./safe-filename";
 import { removeBlob, storeBytes, type StoredBytes } from "./store-bytes";
@@ -18,7 +19,8 @@ const MOST_FILES = 100;
  * Stores the files of a request, multipart field `file` or raw body, as they come. When the request breaks off, nothing of
  * it is kept.
  */
-export async function receiveFiles(database: Database, groupId: string, request: Request, filename: string | undefined): Promise<ReceivedFile[] | Problem> {
+export async function receiveFiles({ groupId }: Pick<Actor, "groupId">, request: Request, filename: string | undefined): Promise<ReceivedFile[] | Problem> {
+  const database = openDatabase();
   if (!request.body) return emptyUpload(filename);
   const stream = Readable.fromWeb(request.body as unknown as WebStream);
   const received: ReceivedFile[] = [];
