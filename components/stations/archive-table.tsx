@@ -10,7 +10,7 @@ export interface ArchiveRow {
   role: "shots" | "calibration-dark" | "calibration-bright";
   state: "waiting" | "read" | "refused";
   format: string | null;
-  problem: { detail: string; errors: ProblemPlace[] } | null;
+  problem: { detail: string; errors?: ProblemPlace[] } | null;
   createdAt: string;
   createdBy: string;
 }

@@ -17,7 +17,7 @@ import { CreateAnalysisInput } from "./analysis-schemas";
 import { createAnalysis } from "./create-analysis";
 
 const DemoRun = z.object({
-  ...CreateRunInput.shape,
+  run: CreateRunInput,
   archives: z.array(z.object({ file: z.string().regex(/^[\w.-]+$/), role: RoleField })).min(1),
   detection: CreateDetectionInput,
   analysis: z.record(z.string(), z.unknown()),
@@ -41,9 +41,8 @@ export async function seedDemoRuns({ database, contributor, analyst, directory, 
   const demoRuns = z.array(DemoRun).parse(JSON.parse(await readFile(path.join(directory, "runs.json"), "utf8")));
   const made: { runId: string; demo: z.output<typeof DemoRun> }[] = [];
   for (const demo of demoRuns.reverse()) {
-    const { archives, detection: _detection, analysis: _analysis, ...fields } = demo;
-    const run = mustWork(await createRun(contributor, fields));
-    for (const { file, role } of archives) {
+    const run = mustWork(await createRun(contributor, demo.run));
+    for (const { file, role } of demo.archives) {
       const bytes = await readFile(path.join(directory, file));
       const stored = await storeBytes(database, contributor.groupId, inOnePart(bytes));
       mustWork(await addArchives(contributor, run.id, [{ ...stored, filename: file }], { role, times_us: undefined }));

@@ -45,7 +45,7 @@ function isingChain(): Record<string, Uint8Array> {
 function straightChain(): Record<string, Uint8Array> {
   const seed = DEMO_SEED + 3;
   const detector = variedDetector(20, seed, { dark: [0.5, 1.0], bright: [10, 15] });
-  const run = simulateSurrogate({ sites: 20, speed: 0.42, times_us: evenTimes(4, 110, 36), shots: 800, detector, seed });
+  const run = simulateSurrogate({ sites: 20, speed: 0.42, times_us: evenTimes(2, 90, 45), shots: 800, detector, seed });
   return { "straight-chain.npz": writeNpz(runArrays(run)) };
 }
 
