@@ -15,7 +15,7 @@ const CHECKS = [
 const scratch = mkdtempSync(path.join(os.tmpdir(), "strandline-ci-"));
 const total = { passed: 0, failed: 0 };
 
-ensureNpmPackages();
+await ensureNpmPackages();
 for (const check of CHECKS) {
   if (check.first) npm(check.first);
   count(check.name, npm(check.args));

@@ -7,8 +7,6 @@ const port = Number(process.env.PORT || 3000);
 
 const app = next({ dev, hostname, port });
 const handle = app.getRequestHandler();
-await app.prepare();
-
 const server = createServer((request, response) => {
   nameClient(request);
   void handle(request, response);
@@ -20,6 +18,13 @@ server.on("error", (error) => {
   console.error(error.code === "EADDRINUSE" ? `Port ${port} on ${hostname} is taken; set PORT to another.` : error.message);
   process.exit(1);
 });
+
+process.once("SIGTERM", end);
+process.once("disconnect", end);
+// The starting process may have gone while this one was still loading.
+if (process.connected === false) end();
+
+await app.prepare();
 server.listen(port, hostname);
 
 /** Sign-in attempts are limited by client: only a proxy on this machine is believed about who that is. */
@@ -32,5 +37,3 @@ function end() {
   server.closeAllConnections();
   server.close(() => process.exit(0));
 }
-process.on("SIGTERM", end);
-process.on("disconnect", end);

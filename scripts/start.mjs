@@ -1,22 +1,27 @@
 import { mkdirSync } from "node:fs";
-import { ensureBuild } from "./start/build.mjs";
-import { startDatabase } from "./start/database.mjs";
+import { ensureBuild, ensureWorkerBundle } from "./start/build.mjs";
+import { endCommands } from "./start/commands.mjs";
+import { privateDatabase } from "./start/database.mjs";
+import { holdDataDirectory } from "./start/hold.mjs";
 import { ensureDebianPackages, ensureNpmPackages } from "./start/packages.mjs";
+import { whenNpmEnds } from "./start/parent.mjs";
 import { endOf, keepWorker, prepareDatabase, startPart, stopPart, untilHealthy } from "./start/parts.mjs";
 import { readSecrets } from "./start/secrets.mjs";
 import { readSettings } from "./start/settings.mjs";
 
 let stopping = false;
+let giveBack = () => undefined;
 const running = { database: null, web: null, workers: [] };
 
 async function start() {
   const settings = readSettings(process.env);
   const development = process.argv.includes("--dev");
   mkdirSync(settings.dataDirectory, { recursive: true, mode: 0o700 });
-  ensureNpmPackages();
+  giveBack = holdDataDirectory(settings.dataDirectory);
+  await ensureNpmPackages();
   const secrets = readSecrets(settings.dataDirectory);
   const databaseUrl = settings.databaseUrl ?? (await ownDatabase(settings, secrets));
-  ensureBuild();
+  await (development ? ensureWorkerBundle() : ensureBuild());
   const address = `http://${settings.host.includes(":") ? `[${settings.host}]` : settings.host}:${settings.port}`;
   const environment = {
     NODE_ENV: development ? "development" : "production",
@@ -29,7 +34,8 @@ async function start() {
     PORT: String(settings.port),
     PUBLIC_URL: settings.publicUrl ?? address,
   };
-  const prepared = prepareDatabase(environment);
+  const prepared = await prepareDatabase(environment);
+  if (stopping) return;
   startWeb(environment, settings);
   for (let number = 1; number <= settings.workers; number++) {
     running.workers.push(keepWorker(() => startPart({ name: `worker ${number}`, file: ".next/worker/main.mjs", environment, dataDirectory: settings.dataDirectory }), () => stopping, (text) => console.error(text)));
@@ -39,10 +45,9 @@ async function start() {
 }
 
 async function ownDatabase(settings, secrets) {
-  ensureDebianPackages([{ program: "mariadbd", name: "mariadb-server" }]);
-  running.database = await startDatabase(settings.dataDirectory, secrets.database);
-  running.database.child?.once("exit", (code, signal) => fail({ name: "database", log: running.database.log }, code, signal));
-  return running.database.url;
+  await ensureDebianPackages([{ program: "mariadbd", name: "mariadb-server" }]);
+  running.database = privateDatabase(settings.dataDirectory);
+  return running.database.start(secrets.database, (code, signal) => fail(running.database, code, signal));
 }
 
 function startWeb(environment, settings) {
@@ -60,8 +65,10 @@ function fail(part, code, signal) {
 async function stop(code) {
   if (stopping) return;
   stopping = true;
+  endCommands();
   await Promise.all([stopPart(running.web), ...running.workers.map((kept) => stopPart(kept.part))]);
   await running.database?.stop();
+  giveBack();
   process.exit(code);
 }
 
@@ -76,9 +83,10 @@ function welcome(settings, address, prepared) {
   return [...lines, "Ctrl-C ends it."].join("\n");
 }
 
-process.on("SIGINT", () => void stop(0));
-process.on("SIGTERM", () => void stop(0));
+for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"]) process.on(signal, () => void stop(0));
+whenNpmEnds(() => void stop(0));
 start().catch((error) => {
+  if (stopping) return;
   console.error(`Strandline did not start: ${error.message}`);
   void stop(1);
 });

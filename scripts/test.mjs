@@ -3,28 +3,32 @@ import { mkdtempSync, rmSync } from "node:fs";
 import os from "node:os";
 import path from "node:path";
 import { ensureBuild } from "./start/build.mjs";
-import { freePort, startDatabase } from "./start/database.mjs";
+import { endCommands } from "./start/commands.mjs";
+import { freePort, privateDatabase } from "./start/database.mjs";
 import { ensureDebianPackages, ensureNpmPackages } from "./start/packages.mjs";
-import { prepareDatabase, startPart, stopPart, untilHealthy } from "./start/parts.mjs";
+import { whenNpmEnds } from "./start/parent.mjs";
+import { endOf, prepareDatabase, startPart, stopPart, untilHealthy } from "./start/parts.mjs";
 import { ROOT } from "./start/settings.mjs";
 
 const dataDirectory = mkdtempSync(path.join(os.tmpdir(), "strandline-test-"));
-const running = { database: null, web: null, worker: null, tests: null };
+const running = { database: privateDatabase(dataDirectory), web: null, worker: null, tests: null };
+
+let cleaning = false;
 
 /** Runs all tests against a throw-away database with the demo in it, a real web server and a real worker. */
 async function test() {
-  ensureNpmPackages();
-  ensureDebianPackages([
+  await ensureNpmPackages();
+  await ensureDebianPackages([
     { program: "mariadbd", name: "mariadb-server" },
     { program: "chromium", name: "chromium" },
   ]);
-  ensureBuild();
-  running.database = await startDatabase(dataDirectory, "throw-away");
+  await ensureBuild();
+  const databaseUrl = await running.database.start("throw-away", (code, signal) => console.error(endOf(running.database, code, signal)));
   const port = await freePort();
   const address = `http://127.0.0.1:${port}`;
   const environment = {
     NODE_ENV: "production",
-    DATABASE_URL: running.database.url,
+    DATABASE_URL: databaseUrl,
     STRANDLINE_SESSION_SECRET: "a secret for tests that guards nothing at all",
     STRANDLINE_DEMO: "1",
     STRANDLINE_DEMO_PASSWORD: "low-tide-demo",
@@ -32,11 +36,18 @@ async function test() {
     PORT: String(port),
     PUBLIC_URL: address,
   };
-  prepareDatabase(environment);
-  running.web = startPart({ name: "web server", file: "scripts/server.mjs", environment, dataDirectory });
-  running.worker = startPart({ name: "worker 1", file: ".next/worker/main.mjs", environment, dataDirectory });
+  await prepareDatabase(environment);
+  running.web = startReported({ name: "web server", file: "scripts/server.mjs", environment, dataDirectory });
+  running.worker = startReported({ name: "worker 1", file: ".next/worker/main.mjs", environment, dataDirectory });
   await untilHealthy(address, () => false);
   return runVitest({ ...environment, NODE_ENV: "test", STRANDLINE_TEST_URL: address, NO_COLOR: "1" });
+}
+
+/** The logs go with the throw-away directory: what a part said before it ended by itself is shown at once. */
+function startReported(part) {
+  const started = startPart(part);
+  started.child.once("exit", (code, signal) => !cleaning && console.error(endOf(started, code, signal)));
+  return started;
 }
 
 function runVitest(environment) {
@@ -50,18 +61,22 @@ function runVitest(environment) {
 }
 
 async function cleanUp() {
+  cleaning = true;
+  endCommands();
   running.tests?.kill("SIGTERM");
   await Promise.all([stopPart(running.web), stopPart(running.worker)]);
-  await running.database?.stop();
+  await running.database.stop();
   rmSync(dataDirectory, { recursive: true, force: true });
 }
 
-for (const signal of ["SIGINT", "SIGTERM"]) {
-  process.once(signal, () => void cleanUp().then(() => process.exit(130)));
+function giveUp() {
+  if (!cleaning) void cleanUp().then(() => process.exit(130));
 }
+
+for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"]) process.on(signal, giveUp);
+whenNpmEnds(giveUp);
 const code = await test().catch((error) => {
-  console.error(error.message);
+  if (!cleaning) console.error(error.message);
   return 1;
 });
-await cleanUp();
-process.exit(code);
+if (!cleaning) await cleanUp().then(() => process.exit(code));

@@ -1,22 +1,23 @@
-import { spawnSync } from "node:child_process";
 import { createHash } from "node:crypto";
 import { existsSync, readFileSync, writeFileSync } from "node:fs";
 import path from "node:path";
+import { runCommand } from "./commands.mjs";
 import { ROOT } from "./settings.mjs";
 
 const MARK = path.join(ROOT, "node_modules", ".strandline-lock");
 
 /** Installs the npm packages from the lock file when they are missing or the lock has changed since. */
-export function ensureNpmPackages() {
+export async function ensureNpmPackages() {
   const lock = createHash("sha256").update(readFileSync(path.join(ROOT, "package-lock.json"))).digest("hex");
   if (existsSync(MARK) && readFileSync(MARK, "utf8") === lock) return;
   console.log("Installing packages from the lock file …");
-  run("npm", ["ci", "--no-audit", "--no-fund", "--loglevel=error"], "npm ci");
+  // The build needs the development packages, whatever NODE_ENV says.
+  await runCommand("npm", ["ci", "--include=dev", "--no-audit", "--no-fund", "--loglevel=error"], { name: "npm ci" });
   writeFileSync(MARK, lock);
 }
 
 /** Installs Debian packages whose program is missing; says plainly what to do when that is not possible here. */
-export function ensureDebianPackages(wanted) {
+export async function ensureDebianPackages(wanted) {
   const missing = wanted.filter(({ program }) => !isInstalled(program)).map(({ name }) => name);
   if (missing.length === 0) return;
   if (process.getuid?.() !== 0 || !isInstalled("apt-get")) {
@@ -24,18 +25,11 @@ export function ensureDebianPackages(wanted) {
   }
   console.log(`Installing ${missing.join(", ")} from Debian …`);
   const environment = { ...process.env, DEBIAN_FRONTEND: "noninteractive" };
-  run("apt-get", ["update", "-qq"], "apt-get update", environment);
-  run("apt-get", ["install", "-y", "-qq", "--no-install-recommends", ...missing], "apt-get install", environment);
+  await runCommand("apt-get", ["update", "-qq"], { name: "apt-get update", environment });
+  await runCommand("apt-get", ["install", "-y", "-qq", "--no-install-recommends", ...missing], { name: "apt-get install", environment });
 }
 
 function isInstalled(program) {
   const places = [...(process.env.PATH ?? "").split(":"), "/usr/sbin", "/usr/bin"];
   return places.some((place) => existsSync(path.join(place, program)));
-}
-
-function run(command, args, name, environment = process.env) {
-  const { status, error, stdout, stderr } = spawnSync(command, args, { cwd: ROOT, env: environment, encoding: "utf8", maxBuffer: 1 << 28 });
-  if (status === 0) return;
-  const last = `${stdout ?? ""}\n${stderr ?? ""}`.trim().split("\n").slice(-15).join("\n");
-  throw new Error(`${name} failed: ${error?.message ?? `exit code ${status}`}\n${last}`);
 }

@@ -1,7 +1,8 @@
-import { spawn, spawnSync } from "node:child_process";
-import { mkdirSync, openSync } from "node:fs";
+import { spawn } from "node:child_process";
+import { closeSync, mkdirSync, openSync } from "node:fs";
 import path from "node:path";
 import { setTimeout as sleep } from "node:timers/promises";
+import { runCommand } from "./commands.mjs";
 import { lastLines } from "./database.mjs";
 import { ROOT } from "./settings.mjs";
 
@@ -23,6 +24,7 @@ export function startPart({ name, file, environment, dataDirectory }) {
     stdio: ["ignore", output, output, "ipc"],
     detached: true,
   });
+  closeSync(output);
   return { name, child, log };
 }
 
@@ -63,14 +65,12 @@ function hasEnded(child) {
 }
 
 /** Migrates and seeds; returns what the prepare step says, such as a one-time set-up key. */
-export function prepareDatabase(environment) {
-  const { status, stdout, stderr } = spawnSync(process.execPath, [path.join(ROOT, ".next/worker/prepare.mjs")], {
-    cwd: ROOT,
-    encoding: "utf8",
-    env: { ...process.env, ...environment },
+export async function prepareDatabase(environment) {
+  const printed = await runCommand(process.execPath, [path.join(ROOT, ".next/worker/prepare.mjs")], {
+    name: "preparing the database",
+    environment: { ...process.env, ...environment },
   });
-  if (status !== 0) throw new Error(`the database could not be prepared:\n${stderr}`);
-  return JSON.parse(stdout.trim().split("\n").at(-1));
+  return JSON.parse(printed.trim().split("\n").at(-1));
 }
 
 /** Waits until the health answer is 200; throws with the last answer when it takes longer than a minute. */
@@ -78,10 +78,10 @@ export async function untilHealthy(address, hasFailed) {
   const deadline = Date.now() + 60_000;
   let last = "no answer";
   while (Date.now() < deadline && !hasFailed()) {
-    const answer = await fetch(`${address}/api/v1/health`).catch((error) => ({ ok: false, text: async () => error.message }));
+    const answer = await fetch(`${address}/api/v1/health`, { signal: AbortSignal.timeout(10_000) }).catch((error) => ({ ok: false, text: async () => error.message }));
     if (answer.ok) return;
     last = await answer.text();
     await sleep(150);
   }
-  if (!hasFailed()) throw new Error(`the program does not get healthy: ${last}`);
+  if (!hasFailed()) throw new Error(`it does not get healthy: ${last}`);
 }
