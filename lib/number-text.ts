@@ -1,4 +1,7 @@
 const MINUS = "\u2212";
+/** Below this, numbers with an error are written in powers of ten. */
+const SMALLEST_PLAIN = 1e-3;
+const SUPERSCRIPTS = "⁰¹²³⁴⁵⁶⁷⁸⁹";
 
 /** Returns a number with a typeset minus sign, with `digits` significant digits; "–" for null or NaN. */
 export function plainNumber(value: number | null | undefined, digits = 4): string {
@@ -22,6 +25,7 @@ export function withUncertainty(value: number | null | undefined, error: number 
   if (value === null || value === undefined || !Number.isFinite(value)) return "–";
   if (error === null || error === undefined || !Number.isFinite(error) || error <= 0) return plainNumber(value);
   const { digits, exponent } = shortError(error);
+  if (Math.max(Math.abs(value), error) < SMALLEST_PLAIN) return inPowersOfTen(value, error);
   if (exponent > 0) {
     const scale = 10 ** exponent;
     return `${fixedNumber(Math.round(value / scale) * scale, 0)}(${digits * scale})`;
@@ -52,6 +56,12 @@ export function byteCount(bytes: number): string {
   const units = ["B", "kB", "MB", "GB", "TB"];
   const step = bytes > 0 ? Math.min(units.length - 1, Math.floor(Math.log10(bytes) / 3)) : 0;
   return `${plainNumber(bytes / 1000 ** step, 3)}\u00a0${units[step]}`;
+}
+
+function inPowersOfTen(value: number, error: number): string {
+  const power = Math.floor(Math.log10(Math.max(Math.abs(value), error)));
+  const raised = [...String(Math.abs(power))].map((digit) => SUPERSCRIPTS[Number(digit)]).join("");
+  return `${withUncertainty(value / 10 ** power, error / 10 ** power)}\u202f×\u202f10${power < 0 ? "⁻" : ""}${raised}`;
 }
 
 function shortError(error: number): { digits: number; exponent: number } {

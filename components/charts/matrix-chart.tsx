@@ -29,7 +29,7 @@ export function MatrixChart({ title, caption, siteNames, value, error, limit, la
   const themeName = useThemeName();
   const sites = siteNames.length;
   const side = Math.min(width, largest);
-  const geometry = useMemo(() => matrixGeometry(side, sites), [side, sites]);
+  const geometry = useMemo(() => matrixGeometry(side, sites, labelWidth(siteNames)), [side, sites, siteNames]);
   const colour = useCallback(
     (row: number, column: number) => (row === column ? null : divergingColour(themeName, value(row, column), limit)),
     [themeName, value, limit],
@@ -43,7 +43,8 @@ export function MatrixChart({ title, caption, siteNames, value, error, limit, la
       return column < 0 || column >= sites || row < 0 || row >= sites ? null : { column, row };
     },
   });
-  const every = Math.max(1, Math.ceil(16 / (geometry.area.width / sites)));
+  const everyRow = Math.max(1, Math.ceil(15 / (geometry.area.height / sites)));
+  const everyColumn = Math.max(1, Math.ceil(labelWidth(siteNames) / (geometry.area.width / sites)));
   return (
     <ChartFigure
       title={title}
@@ -68,14 +69,20 @@ export function MatrixChart({ title, caption, siteNames, value, error, limit, la
           <svg {...handlers} role="img" aria-label={`${title}: ${sites} by ${sites} sites. Arrow keys move the read-out.`} className="absolute inset-0 touch-pan-y" width={side} height={side}>
             <rect x={geometry.area.left} y={geometry.area.top} width={geometry.area.width} height={geometry.area.height} fill="none" stroke="var(--rule)" />
             <g fontSize={11} fill="var(--muted)" className="figures">
-              {siteNames.map((name, i) =>
-                i % every === 0 ? (
-                  <g key={name + i}>
-                    <text x={geometry.column(i + 0.5)} y={geometry.area.bottom + 14} textAnchor="middle">{name}</text>
-                    <text x={geometry.area.left - 5} y={geometry.row(i + 0.5)} dy="0.34em" textAnchor="end">{name}</text>
-                  </g>
-                ) : null,
-              )}
+              {siteNames.map((name, i) => (
+                <g key={name + i}>
+                  {i % everyColumn === 0 && (
+                    <text x={geometry.column(i + 0.5)} y={geometry.area.bottom + 14} textAnchor="middle">
+                      {shortName(name)}
+                    </text>
+                  )}
+                  {i % everyRow === 0 && (
+                    <text x={geometry.area.left - 5} y={geometry.row(i + 0.5)} dy="0.34em" textAnchor="end">
+                      {shortName(name)}
+                    </text>
+                  )}
+                </g>
+              ))}
             </g>
             {cursor && (
               <rect
@@ -95,9 +102,18 @@ export function MatrixChart({ title, caption, siteNames, value, error, limit, la
   );
 }
 
-function matrixGeometry(side: number, sites: number) {
+/** Room for the longest site name, within reason; longer ones are cut. */
+function labelWidth(siteNames: string[]): number {
+  return Math.min(58, 12 + 6 * Math.max(...siteNames.map((name) => name.length)));
+}
+
+function shortName(name: string): string {
+  return name.length > 7 ? `${name.slice(0, 6)}…` : name;
+}
+
+function matrixGeometry(side: number, sites: number, left: number) {
   const size = { width: side, height: side };
-  const area = plotArea(size, { left: 30, right: 8, top: 8, bottom: 30 });
+  const area = plotArea(size, { left, right: 8, top: 8, bottom: 30 });
   const column = scaleLinear().domain([0, sites]).range([area.left, area.right]);
   const row = scaleLinear().domain([0, sites]).range([area.bottom, area.top]);
   const borders = Array.from({ length: sites + 1 }, (_, i) => i);

@@ -35,6 +35,8 @@ const MODEL_NAMES: Record<RunRow["model"], string> = { ising: "Ising", xy: "XY",
 /** Columns that a narrow screen leaves out; the run's own page has them. */
 const WIDE_ONLY = new Set(["createdAt", "sites", "times", "shotsKept", "model", "alpha"]);
 const NUMERIC = new Set(["sites", "times", "shotsKept", "alpha", "beta"]);
+/** Words that follow a column of figures keep their distance from it. */
+const AFTER_FIGURES = new Set(["model", "status"]);
 
 const columns = helper.columns([
   helper.display({
@@ -87,7 +89,7 @@ export function RunsTable({ rows }: { rows: RunRow[] }) {
                   key={header.id}
                   scope="col"
                   aria-sort={ariaSort(header.column.getIsSorted())}
-                  className={`${WIDE_ONLY.has(header.id) ? "hidden lg:table-cell" : ""} ${NUMERIC.has(header.id) ? "text-right" : ""} ${header.id === "map" ? "hidden sm:table-cell" : ""}`}
+                  className={`${cellClass(header.id)} ${NUMERIC.has(header.id) ? "sm:[&_span]:order-first" : ""}`}
                 >
                   {header.column.getCanSort() ? (
                     <SortButton sorted={header.column.getIsSorted()} onClick={() => header.column.toggleSorting()}>
@@ -107,7 +109,7 @@ export function RunsTable({ rows }: { rows: RunRow[] }) {
               {row.getAllCells().map((cell) => (
                 <td
                   key={cell.id}
-                  className={`${WIDE_ONLY.has(cell.column.id) ? "hidden lg:table-cell" : ""} ${NUMERIC.has(cell.column.id) ? "text-right" : ""} ${cell.column.id === "map" ? "hidden w-28 sm:table-cell" : ""}`}
+                  className={cellClass(cell.column.id)}
                 >
                   <table.FlexRender cell={cell} />
                 </td>
@@ -126,6 +128,17 @@ export function RunsTable({ rows }: { rows: RunRow[] }) {
       )}
     </>
   );
+}
+
+function cellClass(column: string): string {
+  return [
+    WIDE_ONLY.has(column) && "hidden lg:table-cell",
+    NUMERIC.has(column) && "text-right",
+    AFTER_FIGURES.has(column) && "pl-6!",
+    column === "map" && "hidden w-28 sm:table-cell",
+  ]
+    .filter(Boolean)
+    .join(" ");
 }
 
 function matches(row: { original: RunRow }, _column: string, search: string): boolean {

@@ -15,8 +15,8 @@ export function TideLines() {
 function shoreline(q: number): string {
   const reach = (q + 1) / LINES;
   const points = Array.from({ length: 41 }, (_, s) => {
-    const x = 420 + (1020 * s) / 40;
-    const y = 900 - 560 * reach * (s / 40) ** (0.9 + 0.9 * reach) - 26 * reach * Math.sin(s / 6 + q / 3);
+    const x = 560 + (880 * s) / 40;
+    const y = 900 - 560 * reach * (s / 40) ** (0.9 + 0.9 * reach) - 26 * reach * (s / 40) * Math.sin(s / 6 + q / 3) + 12;
     return `${x.toFixed(1)},${y.toFixed(1)}`;
   });
   return `M${points.join("L")}`;

@@ -1,4 +1,6 @@
-import type { ReactNode } from "react";
+"use client";
+
+import { useState, type ReactNode } from "react";
 import { AnalysisChoice } from "./analysis-choice";
 import { AnalysisForm } from "./analysis-form";
 
@@ -15,19 +17,22 @@ interface AnalysisBarProps {
 
 /** Which analysis is shown, what it rests on, and the way to another one. */
 export function AnalysisBar({ runId, siteNames, analyses, shown, provenance, detections }: AnalysisBarProps) {
+  const [open, setOpen] = useState(false);
   return (
-    <div className="mb-5">
-      <div className="flex flex-wrap items-end gap-x-6 gap-y-2">
+    <div className="mb-4">
+      <div className="flex flex-wrap items-center gap-x-5 gap-y-2">
         <AnalysisChoice analyses={analyses} shown={shown} />
-        <p className="label figures min-w-0 pb-1.5 break-words">{provenance}</p>
+        <p className="label figures min-w-0 grow basis-64 break-words">{provenance}</p>
+        {detections && (
+          <button type="button" className="button" aria-expanded={open} onClick={() => setOpen(!open)}>
+            {open ? "Close" : "New analysis"}
+          </button>
+        )}
       </div>
-      {detections && detections.length > 0 && (
-        <details className="mt-2 border-b border-hairline pb-2">
-          <summary className="cursor-pointer font-[550]">New analysis…</summary>
-          <div className="mt-4 mb-3">
-            <AnalysisForm runId={runId} siteNames={siteNames} detections={detections} />
-          </div>
-        </details>
+      {open && detections && (
+        <div className="mt-4 border-y border-hairline py-5">
+          <AnalysisForm runId={runId} siteNames={siteNames} detections={detections} onStarted={() => setOpen(false)} />
+        </div>
       )}
     </div>
   );

@@ -14,7 +14,7 @@ export function AnalysisChoice({ analyses, shown }: AnalysisChoiceProps) {
   const pathname = usePathname();
   return (
     <label>
-      <span className="label block">Shown</span>
+      <span className="sr-only">Analysis shown</span>
       <select className="field w-auto max-w-full" value={shown} onChange={(event) => router.push(`${pathname}?analysis=${event.target.value}`)}>
         {analyses.map((analysis) => (
           <option key={analysis.number} value={analysis.number}>

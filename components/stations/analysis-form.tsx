@@ -12,10 +12,11 @@ interface AnalysisFormProps {
   siteNames: string[];
   /** Newest first. */
   detections: { id: string; number: number; method: string; label: string | null; hasRates: boolean }[];
+  onStarted?: () => void;
 }
 
 /** Starts an analysis; every field has the default of the definitions. */
-export function AnalysisForm({ runId, siteNames, detections }: AnalysisFormProps) {
+export function AnalysisForm({ runId, siteNames, detections, onStarted }: AnalysisFormProps) {
   const router = useRouter();
   const [busy, setBusy] = useState(false);
   const [detectionId, setDetectionId] = useState(detections[0]?.id ?? "");
@@ -28,6 +29,7 @@ export function AnalysisForm({ runId, siteNames, detections }: AnalysisFormProps
     setRefusal(null);
     try {
       await sendJson("POST", `/api/v1/runs/${runId}/analyses`, analysisFields(new FormData(event.currentTarget), detectionId));
+      onStarted?.();
       router.refresh();
     } catch (error) {
       setRefusal(error instanceof ApiProblem ? { detail: error.message, errors: error.places } : { detail: "The server did not answer.", errors: [] });

@@ -47,7 +47,7 @@ export function DetectionForm({ runId, sites, hasCalibration, latest }: Detectio
 
   return (
     <form onSubmit={save} className="space-y-4">
-      <h2>{latest ? `Save detection ${latest.number + 1} or later` : "Save the first detection"}</h2>
+      <h2>{latest ? "New detection" : "First detection"}</h2>
       <fieldset disabled={busy}>
         <legend className="mb-1 font-[550]">Thresholds from</legend>
         <div className="space-y-1">

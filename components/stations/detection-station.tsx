@@ -24,7 +24,7 @@ const MOST_FREQUENT_SHARE = 0.9995;
 /** Per-site histograms with thresholds and fitted components, the table of sites, and the way to the next detection. */
 export function DetectionStation({ runId, siteNames, detections, mayCreate, hasCalibration }: DetectionStationProps) {
   const [chosen, choose] = useUrlState("detection", "");
-  const [scale, setScale] = useUrlState("scale", "linear");
+  const [scale, setScale] = useUrlState("scale", "log");
   const detection = detections.find((candidate) => String(candidate.number) === chosen) ?? detections[0] ?? null;
   const { data, error } = useSWR<HistogramsAnswer>(`/api/v1/runs/${runId}/histograms`, fetchJson);
   const histograms = useMemo(() => siteHistograms(data, siteNames, detection), [data, siteNames, detection]);

@@ -6,7 +6,7 @@ import { isNoFit, type FrontResult, type LinearFront, type NoFit, type Parameter
 export function FitTable({ front }: { front: FrontResult }) {
   const { linear, powerLaw, comparison } = front;
   return (
-    <div className="grid grid-cols-1 gap-x-8 gap-y-3 sm:grid-cols-2 xl:grid-cols-1">
+    <div className="grid grid-cols-1 content-start gap-x-8 gap-y-5 sm:grid-cols-2 xl:grid-cols-1">
       <FitColumn title="Straight line" law={<>τ = t₀ + d / v</>} fit={linear} swatch="var(--ink)">
         {!isNoFit(linear) && (
           <>

@@ -6,7 +6,6 @@ interface RunHeadProps {
   run: {
     id: string;
     title: string;
-    notes: string;
     model: "ising" | "xy" | "other";
     alpha: number | null;
     jMaxHz: number | null;
@@ -44,7 +43,6 @@ export function RunHead({ run, jobs, mayCancel, mayDelete, dependents }: RunHead
         </div>
         {mayDelete && <RemoveRun runId={run.id} title={run.title} dependents={dependents} />}
       </div>
-      {run.notes && <p className="mt-1 max-w-[95ch] text-muted">{run.notes}</p>}
       {jobs.map((job) => (
         <div key={job.id} className="mt-3">
           <JobProgress jobId={job.id} title={JOB_TITLES[job.kind]} mayCancel={mayCancel} />

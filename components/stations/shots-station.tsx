@@ -23,6 +23,7 @@ export interface ShotsView {
 
 interface ShotsStationProps {
   runId: string;
+  notes: string;
   /** Null before the first archive has been read. */
   view: ShotsView | null;
   archives: ArchiveRow[];
@@ -32,7 +33,7 @@ interface ShotsStationProps {
 const REASONS: Record<string, string> = { missing: "a count was missing" };
 
 /** What was read: shots per time, what was set aside and why, brightness by site and time, and the archives behind it. */
-export function ShotsStation({ runId, view, archives, mayUpload }: ShotsStationProps) {
+export function ShotsStation({ runId, notes, view, archives, mayUpload }: ShotsStationProps) {
   return (
     <div className="grid grid-cols-1 gap-x-10 gap-y-8 xl:grid-cols-[1fr_24rem]">
       <div className="min-w-0 space-y-8">
@@ -41,6 +42,12 @@ export function ShotsStation({ runId, view, archives, mayUpload }: ShotsStationP
       </div>
       <aside className="min-w-0 space-y-7">
         {view && <KeptAndSetAside view={view} />}
+        {notes && (
+          <section>
+            <h2>Notes</h2>
+            <p className="mt-1 max-w-[60ch] break-words whitespace-pre-line text-muted">{notes}</p>
+          </section>
+        )}
         {mayUpload && <AddArchives runId={runId} first={archives.length === 0} />}
       </aside>
     </div>

@@ -14,7 +14,7 @@ export function VerdictBlock({ front }: { front: FrontResult }) {
         </ul>
       </details>
       {front.warnings.length > 0 && (
-        <ul className="mt-2 max-w-[75ch] space-y-1 text-warning">
+        <ul className="mt-1 space-y-0.5 text-sm text-warning">
           {front.warnings.map((warning) => (
             <li key={warning}>{warning}</li>
           ))}

@@ -2,6 +2,13 @@ import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { byteCount, fixedNumber, groupedCount, longForm, plainNumber, withUncertainty } from "@/lib/number-text";
 
+/** Reads a short form back: sign, digits, and the power of ten when there is one. */
+function numberIn(text: string): number {
+  const [digits, power] = text.replace("\u2212", "-").split("\u202f×\u202f10");
+  const exponent = (power ?? "").replace("⁻", "-").replace(/[⁰¹²³⁴⁵⁶⁷⁸⁹]/g, (digit) => String("⁰¹²³⁴⁵⁶⁷⁸⁹".indexOf(digit)));
+  return Number(digits.replace(/\(.*/, "")) * 10 ** Number(exponent);
+}
+
 // The short form 1.42(5) is common practice (no source); the two-digit rule for errors that begin with 1 as well.
 describe("a value with its uncertainty", () => {
   it("carries the error in units of the last digit shown", () => {
@@ -35,7 +42,7 @@ describe("a value with its uncertainty", () => {
   it("never shows a value further from the true one than the error", () => {
     fc.assert(
       fc.property(fc.double({ min: -1e4, max: 1e4, noNaN: true }), fc.double({ min: 1e-6, max: 1e3, noNaN: true }), (value, error) => {
-        const shown = Number(withUncertainty(value, error).replace(/\(.*/, "").replace("\u2212", "-"));
+        const shown = numberIn(withUncertainty(value, error));
         expect(Math.abs(shown - value)).toBeLessThanOrEqual(error * 0.51);
       }),
     );
@@ -55,5 +62,12 @@ describe("numbers in text", () => {
   it("counts bytes in powers of ten", () => {
     expect(byteCount(0)).toBe("0\u00a0B");
     expect(byteCount(2_147_483_648)).toBe("2.15\u00a0GB");
+  });
+});
+
+describe("very small values", () => {
+  it("are written in powers of ten", () => {
+    expect(withUncertainty(1.02e-6, 1.8e-6)).toBe("1.0(18)\u202f×\u202f10⁻⁶");
+    expect(withUncertainty(-4.2e-12, 3e-13)).toBe("\u22124.2(3)\u202f×\u202f10⁻¹²");
   });
 });

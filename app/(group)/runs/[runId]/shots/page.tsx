@@ -8,5 +8,5 @@ export const metadata: Metadata = { title: "Shots" };
 export default async function ShotsPage({ params }: PageProps<"/runs/[runId]/shots">) {
   const { actor, run } = await runPageData((await params).runId);
   const view = run.version > 0 && run.countType ? { ...run, runId: run.id, countType: run.countType } : null;
-  return <ShotsStation runId={run.id} view={view} archives={run.archives} mayUpload={may(actor, "archive.upload")} />;
+  return <ShotsStation runId={run.id} notes={run.notes} view={view} archives={run.archives} mayUpload={may(actor, "archive.upload")} />;
 }
