@@ -23,6 +23,11 @@ describe("imports go down only", () => {
     ["db/connection.ts", "lib/accounts/policy"],
     ["lib/accounts/sign-in.ts", "components/shell/wordmark"],
     ["app/page.tsx", "db/connection"],
+    ["lib/jobs/claim-job.ts", "lib/runs/find-run"],
+    ["lib/jobs/claim-job.ts", "lib/jobs/job-handlers"],
+    ["lib/runs/ingest-run.ts", "lib/detections/create-detection"],
+    ["lib/accounts/sign-in.ts", "lib/jobs/enqueue-job"],
+    ["lib/unknown/new-room.ts", "lib/runs/find-run"],
   ])("%s may not import %s", (importer, imported) => {
     expect(directionFault(importer, imported)).toContain("imports go down only");
   });
@@ -33,6 +38,9 @@ describe("imports go down only", () => {
     ["components/charts/axis.tsx", "lib/number-text"],
     ["lib/analyses/run-analysis.ts", "lib/science/front/analyse-front"],
     ["lib/runs/create-run.ts", "db/schema/runs"],
+    ["lib/runs/read-archives.ts", "lib/archives/archive-source"],
+    ["lib/analyses/plan-analysis.ts", "lib/detections/list-detections"],
+    ["lib/jobs/job-handlers.ts", "lib/analyses/run-analysis"],
     ["db/seed.ts", "lib/accounts/create-group"],
     ["tests/science/front/crossing.test.ts", "db/connection"],
   ])("%s may import %s", (importer, imported) => {
