@@ -30,22 +30,24 @@ function variedDetector(sites: number, seed: number, range: { dark: [number, num
 function xyChain(): Record<string, Uint8Array> {
   const seed = DEMO_SEED + 1;
   const detector = variedDetector(11, seed, { dark: [0.5, 1.1], bright: [11, 16] });
-  const run = simulateQuench({ model: "xy", sites: 11, alpha: 0.9, j0Hz: 420, times_us: evenTimes(10, 380, 32), shots: 1200, detector, seed });
+  const run = simulateQuench({ model: "xy", sites: 11, alpha: 0.9, j0Hz: 420, times_us: evenTimes(10, 380, 30), shots: 1200, detector, seed });
   return { "xy-chain.csv.gz": gzipSync(new TextEncoder().encode(shotsCsv(run)), { level: 9, mtime: 0 }) };
 }
 
 function isingChain(): Record<string, Uint8Array> {
   const seed = DEMO_SEED + 2;
-  const detector = variedDetector(10, seed, { dark: [0.8, 1.5], bright: [7.5, 10] }, { darkLeak: 0.03, brightLeak: 0.03 });
-  const run = simulateQuench({ model: "ising", sites: 10, alpha: 0.8, j0Hz: 330, times_us: evenTimes(15, 600, 28), shots: 1000, detector, seed });
+  const detector = variedDetector(10, seed, { dark: [0.8, 1.5], bright: [7.5, 10] }, { darkLeak: 0.05, brightLeak: 0.05 });
+  const run = simulateQuench({ model: "ising", sites: 10, alpha: 0.6, j0Hz: 330, times_us: evenTimes(10, 380, 28), shots: 1000, detector, seed });
   const calibration = (prepared: "dark" | "bright") => ({ shape: [1000, 10], values: simulateCalibration(prepared, 1000, detector, seed) });
   return { "ising-chain.npz": writeNpz({ ...runArrays(run), calibration_dark: calibration("dark"), calibration_bright: calibration("bright") }) };
 }
 
 function straightChain(): Record<string, Uint8Array> {
   const seed = DEMO_SEED + 3;
-  const detector = variedDetector(20, seed, { dark: [0.5, 1.0], bright: [10, 15] });
-  const run = simulateSurrogate({ sites: 20, speed: 0.42, times_us: evenTimes(2, 90, 45), shots: 800, detector, seed });
+  const detector = variedDetector(20, seed, { dark: [0.3, 0.6], bright: [7, 10] });
+  // Close while the front passes, then wide: each trace must near its plateau, or the window bends the front.
+  const times_us = [...evenTimes(2, 66, 26), ...evenTimes(90, 360, 10)];
+  const run = simulateSurrogate({ sites: 20, speed: 0.25, times_us, shots: 1000, detector, seed });
   return { "straight-chain.npz": writeNpz(runArrays(run)) };
 }
 

@@ -38,6 +38,15 @@ describe("the exact XY quench", () => {
     expect(connectedSpins(chances, sites / 2 - 1, sites / 2)).toBeCloseTo(cMiddle, 10);
   });
 
+  it("agrees at N=12, the longest chain that is simulated here", () => {
+    const { sites, alpha, time, mean1, c12, c1N, cMiddle } = quenches.xyTwelve;
+    const chances = probabilities(evolve(xyHamiltonian(sites, powerLawCouplings(sites, alpha, 1)), allDown(sites), time));
+    expect(meanSpin(chances, 0)).toBeCloseTo(mean1, 9);
+    expect(connectedSpins(chances, 0, 1)).toBeCloseTo(c12, 9);
+    expect(connectedSpins(chances, 0, 11)).toBeCloseTo(c1N, 9);
+    expect(connectedSpins(chances, 5, 6)).toBeCloseTo(cMiddle, 9);
+  });
+
   it("keeps the norm, and two short steps are one long one", () => {
     const hamiltonian = xyHamiltonian(6, powerLawCouplings(6, 1, 1));
     const once = evolve(hamiltonian, allDown(6), 1.3);
