@@ -65,7 +65,7 @@ function fail(part, code, signal) {
 async function stop(code) {
   if (stopping) return;
   stopping = true;
-  endCommands();
+  await endCommands();
   await Promise.all([stopPart(running.web), ...running.workers.map((kept) => stopPart(kept.part))]);
   await running.database?.stop();
   giveBack();

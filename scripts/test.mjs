@@ -62,7 +62,7 @@ function runVitest(environment) {
 
 async function cleanUp() {
   cleaning = true;
-  endCommands();
+  await endCommands();
   running.tests?.kill("SIGTERM");
   await Promise.all([stopPart(running.web), stopPart(running.worker)]);
   await running.database.stop();

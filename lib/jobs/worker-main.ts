@@ -47,6 +47,8 @@ async function work(ends: AbortSignal): Promise<void> {
 
 const ending = new AbortController();
 for (const event of ["SIGTERM", "SIGINT", "disconnect"] as const) process.once(event, () => ending.abort());
+// The starting process may have gone while this one was still loading.
+if (process.connected === false) ending.abort();
 
 work(ending.signal).then(
   () => process.exit(0),

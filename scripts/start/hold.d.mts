@@ -1,0 +1,1 @@
+export declare function holdDataDirectory(dataDirectory: string): () => void;
