@@ -27,10 +27,10 @@ function write(file, text) {
   }
 }
 
-/** When a process began, in clock ticks since boot: a process number alone may have been given out again. */
+/** When a living process began, in clock ticks since boot: a process number alone may have been given out again. */
 function bootTicks(pid) {
   const file = `/proc/${pid}/stat`;
   if (!existsSync(file)) return "ended";
   const afterName = readFileSync(file, "utf8").split(") ").at(-1).split(" ");
-  return afterName[19];
+  return afterName[0] === "Z" ? "ended" : afterName[19];
 }
