@@ -1,7 +1,7 @@
 import { mkdirSync } from "node:fs";
 import { ensureBuild, ensureWorkerBundle } from "./start/build.mjs";
 import { endCommands } from "./start/commands.mjs";
-import { privateDatabase } from "./start/database.mjs";
+import { DATABASE_PACKAGES, privateDatabase } from "./start/database.mjs";
 import { holdDataDirectory } from "./start/hold.mjs";
 import { ensureDebianPackages, ensureNpmPackages } from "./start/packages.mjs";
 import { whenNpmEnds } from "./start/parent.mjs";
@@ -45,7 +45,7 @@ async function start() {
 }
 
 async function ownDatabase(settings, secrets) {
-  await ensureDebianPackages([{ program: "mariadbd", name: "mariadb-server" }]);
+  await ensureDebianPackages(DATABASE_PACKAGES);
   running.database = privateDatabase(settings.dataDirectory);
   return running.database.start(secrets.database, (code, signal) => fail(running.database, code, signal));
 }

@@ -4,7 +4,7 @@ import os from "node:os";
 import path from "node:path";
 import { ensureBuild } from "./start/build.mjs";
 import { endCommands } from "./start/commands.mjs";
-import { freePort, privateDatabase } from "./start/database.mjs";
+import { DATABASE_PACKAGES, freePort, privateDatabase } from "./start/database.mjs";
 import { ensureDebianPackages, ensureNpmPackages } from "./start/packages.mjs";
 import { whenNpmEnds } from "./start/parent.mjs";
 import { endOf, prepareDatabase, startPart, stopPart, untilHealthy } from "./start/parts.mjs";
@@ -18,10 +18,7 @@ let cleaning = false;
 /** Runs all tests against a throw-away database with the demo in it, a real web server and a real worker. */
 async function test() {
   await ensureNpmPackages();
-  await ensureDebianPackages([
-    { program: "mariadbd", name: "mariadb-server" },
-    { program: "chromium", name: "chromium" },
-  ]);
+  await ensureDebianPackages([...DATABASE_PACKAGES, { program: "chromium", name: "chromium" }]);
   await ensureBuild();
   const databaseUrl = await running.database.start("throw-away", (code, signal) => console.error(endOf(running.database, code, signal)));
   const port = await freePort();

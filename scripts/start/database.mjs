@@ -12,6 +12,12 @@ const STOP_MS = 30_000;
 const LONGEST_TEMPORARY_PATH = 60;
 const ENVIRONMENT = { ...process.env, PATH: `${process.env.PATH}:/usr/sbin:/usr/bin` };
 
+/** The core packages alone: `mariadb-server` would leave a second, system-wide server running. */
+export const DATABASE_PACKAGES = [
+  { program: "mariadbd", name: "mariadb-server-core" },
+  { program: "mariadb", name: "mariadb-client-core" },
+];
+
 /**
  * Returns a private MariaDB over `<dataDirectory>/mariadb`, on loopback only. `start` initialises it at first and returns its
  * address; `whenItEnds` hears of an end that nobody asked for. `stop` may be called at any moment.
@@ -122,7 +128,7 @@ async function untilAnswering(files, child) {
   const deadline = Date.now() + START_MS;
   while (Date.now() < deadline) {
     if (hasEnded(child)) break;
-    if (admin(files, "ping").status === 0) return;
+    if (runSql(files, "DO 1").status === 0) return;
     await sleep(100);
   }
   throw new Error(`the database does not answer; the end of ${files.log}:\n${lastLines(files.log, 15)}`);
@@ -134,7 +140,7 @@ function createUser(files, password) {
     `CREATE OR REPLACE USER 'strandline'@'127.0.0.1' IDENTIFIED BY '${password}'`,
     "GRANT ALL ON strandline.* TO 'strandline'@'127.0.0.1'",
   ].join(";\n");
-  const { status, stderr } = spawnSync("mariadb", ["--no-defaults", `--socket=${files.socket}`], { input: statements, encoding: "utf8", env: ENVIRONMENT });
+  const { status, stderr } = runSql(files, statements);
   if (status !== 0) throw new Error(`the database refused to make its user: ${stderr}`);
 }
 
@@ -153,8 +159,9 @@ function hasEnded(child) {
   return child.exitCode !== null || child.signalCode !== null;
 }
 
-function admin(files, command) {
-  return spawnSync("mariadb-admin", ["--no-defaults", `--socket=${files.socket}`, command], { encoding: "utf8", env: ENVIRONMENT });
+/** Runs SQL as the server's root over the socket; only `mariadb` is needed, which comes without a system service. */
+function runSql(files, statements) {
+  return spawnSync("mariadb", ["--no-defaults", `--socket=${files.socket}`], { input: statements, encoding: "utf8", env: ENVIRONMENT });
 }
 
 /** Returns a port on loopback that is free now: the wished one, or any; rejects when the wished one is taken. */
