@@ -91,7 +91,8 @@ export const correlatorsEndpoint = endpoint({
       description: "mean is [time][site], value, error, low and high are [time][pair]; null where there is no number",
       schema: z.object({
         times_us: z.array(z.number()),
-        sites: z.array(z.string()),
+        sites: z.number(),
+        siteNames: z.array(z.string()),
         mean: z.array(Numbers),
         meanError: z.array(Numbers),
         pairs: z.array(z.tuple([z.number(), z.number()])),

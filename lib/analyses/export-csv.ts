@@ -7,7 +7,7 @@ import type { Correlators, Traces } from "./read-results";
 /** Returns all pairs as CSV, one row a time and pair. */
 export function correlatorsCsv(row: AnalysisRow, correlators: Correlators): string {
   const lines = [`${csvHead(row)}time_us,site_i,site_j,value,error,low,high,few_flips`];
-  const names = correlators.sites.map(csvText);
+  const names = correlators.siteNames.map(csvText);
   correlators.times_us.forEach((time, k) =>
     correlators.pairs.forEach(([i, j], pair) => {
       const numbers = [correlators.value, correlators.error, correlators.low, correlators.high].map((array) => csvNumber(array[k][pair]));

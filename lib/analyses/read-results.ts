@@ -13,7 +13,8 @@ export type Numbers = (number | null)[];
 
 export interface Correlators {
   times_us: number[];
-  sites: string[];
+  sites: number;
+  siteNames: string[];
   /** `[t][i]` */
   mean: Numbers[];
   meanError: Numbers[];
@@ -54,7 +55,8 @@ export async function readCorrelators(row: AnalysisRow, timeIndex?: number): Pro
   const list = listPairs(sites);
   return {
     times_us: row.timesUs.slice(first, first + count),
-    sites: row.siteNames,
+    sites,
+    siteNames: row.siteNames,
     mean: await rows("mean", sites),
     meanError: await rows("meanError", sites),
     pairs: Array.from({ length: pairs }, (_, pair) => [list[2 * pair], list[2 * pair + 1]]),
