@@ -87,9 +87,10 @@ function startPulse(database: Database, held: HeldJob, stop: AbortController) {
   let ended = false;
   let dirty = false;
   let lastSaid = 0;
+  const pause = new AbortController();
   const beat = async () => {
     while (!ended) {
-      await sleep(PROGRESS_MS, undefined, { ref: false });
+      await sleep(PROGRESS_MS, undefined, { ref: false, signal: pause.signal }).catch(() => undefined);
       const due = Date.now() - lastSaid;
       if (ended || (due < HEARTBEAT_MS && !dirty)) continue;
       dirty = false;
@@ -109,6 +110,7 @@ function startPulse(database: Database, held: HeldJob, stop: AbortController) {
     },
     end: async () => {
       ended = true;
+      pause.abort();
       await beating;
     },
   };

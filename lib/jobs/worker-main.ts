@@ -10,7 +10,7 @@ import { JOB_HANDLERS } from "./job-handlers";
 import { workOnJob } from "./work-on-job";
 import { announceWorker } from "./worker-presence";
 
-const IDLE_MS = 400;
+const IDLE_MS = 150;
 const LONGEST_PAUSE_MS = 10_000;
 const SWEEP_EVERY_MS = 3600_000;
 
