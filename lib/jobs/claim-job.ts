@@ -5,8 +5,8 @@ import { jobs } from "@/db/schema/jobs";
 import { inTransaction } from "@/db/transaction";
 import type { JobRow } from "./job-context";
 
-/** A worker that has said nothing for this long is taken for dead. */
-export const SILENT_AFTER_MS = 15_000;
+/** A worker that has said nothing for this long is taken for dead; heartbeats come every 3 s. */
+const SILENT_AFTER_MS = Number(process.env.STRANDLINE_JOB_SILENCE_MS) || 15_000;
 export const MOST_ATTEMPTS = 3;
 
 /**

@@ -138,7 +138,8 @@ function createUser(files, password) {
   const statements = [
     "CREATE DATABASE IF NOT EXISTS strandline CHARACTER SET utf8mb4 COLLATE utf8mb4_unicode_ci",
     `CREATE OR REPLACE USER 'strandline'@'127.0.0.1' IDENTIFIED BY '${password}'`,
-    "GRANT ALL ON strandline.* TO 'strandline'@'127.0.0.1'",
+    // Tests that start workers of their own make databases beside it.
+    "GRANT ALL ON `strandline%`.* TO 'strandline'@'127.0.0.1'",
   ].join(";\n");
   const { status, stderr } = runSql(files, statements);
   if (status !== 0) throw new Error(`the database refused to make its user: ${stderr}`);
