@@ -36,7 +36,8 @@ export async function downloadArchive(actor: Actor, archiveId: string, request: 
       "content-length": String(row.bytes),
       "content-disposition": attachment(row.filename),
       "x-content-type-options": "nosniff",
-      "cache-control": "private, no-cache",
+      // Without no-transform the server would compress, and the length would be lost.
+      "cache-control": "private, no-cache, no-transform",
       etag,
     },
   });
