@@ -37,9 +37,11 @@ export function AxisBottom({ scale, area, label, theme, ticks, grid = false, for
           </text>
         </g>
       ))}
-      <text x={(area.left + area.right) / 2} y={area.bottom + 12 + 2 * fontSize} fill={theme.ink}>
-        {label}
-      </text>
+      {label && (
+        <text x={(area.left + area.right) / 2} y={area.bottom + 12 + 2 * fontSize} fill={theme.ink}>
+          {label}
+        </text>
+      )}
     </g>
   );
 }

@@ -26,7 +26,7 @@ export interface HistogramProps {
 
 /** Returns scales and area of a site's histogram. */
 export function histogramGeometry({ histogram, size, logarithmic, lastCount }: Omit<HistogramProps, "theme">) {
-  const area = plotArea(size, { left: 4, right: 4, top: 18, bottom: 34 });
+  const area = plotArea(size, { left: 4, right: 4, top: 18, bottom: 20 });
   const tallest = Math.max(1, ...histogram.frequencies);
   const frequency = logarithmic
     ? scaleLog().domain([0.6, tallest * 1.3]).range([area.bottom, area.top]).clamp(true)

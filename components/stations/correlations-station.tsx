@@ -118,7 +118,7 @@ function MatrixAtTime({ analysisId, siteNames, k, time_us, limit }: MatrixAtTime
       value={value}
       error={errorAt}
       limit={limit}
-      largest={560}
+      largest={452}
     />
   );
 }

@@ -57,7 +57,7 @@ export function DetectionStation({ runId, siteNames, detections, mayCreate, hasC
         {error && <p role="alert" className="notice notice-error">{error instanceof Error ? error.message : "The histograms could not be read."}</p>}
         <div className="grid grid-cols-2 gap-x-5 gap-y-2 sm:grid-cols-3 lg:grid-cols-4 2xl:grid-cols-6" aria-busy={!data}>
           {histograms.map((histogram) => (
-            <SiteHistogramChart key={histogram.site} histogram={histogram} logarithmic={scale === "log"} lastCount={lastCount} height={132} />
+            <SiteHistogramChart key={histogram.site} histogram={histogram} logarithmic={scale === "log"} lastCount={lastCount} height={124} />
           ))}
         </div>
         {detection && <DetectionTable detection={detection} siteNames={siteNames} />}

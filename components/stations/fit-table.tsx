@@ -44,11 +44,11 @@ interface FitColumnProps {
 function FitColumn({ title, law, fit, swatch, children }: FitColumnProps) {
   return (
     <section>
-      <h3 className="flex items-baseline gap-2 border-b border-rule pb-1">
+      <h2 className="flex items-baseline gap-2 border-b border-rule pb-1 text-[1rem]">
         <span aria-hidden="true" className="inline-block h-[3px] w-5 self-center" style={{ background: swatch }} />
         <span className="font-[640]">{title}</span>
         <span className="label ml-auto italic">{law}</span>
-      </h3>
+      </h2>
       {isNoFit(fit) ? (
         <p className="mt-1 text-muted">{fit.reason}</p>
       ) : (

@@ -6,9 +6,9 @@ export function VelocityTable({ front }: { front: FrontResult }) {
   const { velocity } = front;
   return (
     <section className="min-w-0">
-      <h3 className="font-[640]">
+      <h2 className="text-[1rem]">
         Velocity <span className="label ml-1 font-normal">sites per ms</span>
-      </h3>
+      </h2>
       <div className="max-h-64 overflow-auto" tabIndex={0} role="region" aria-label="Velocities">
         <table className="hairline-table figures text-sm">
           <thead>
