@@ -51,6 +51,7 @@ export function CorrelationMap(props: CorrelationMapViewProps) {
       columns: data.times_us.length,
       rows: data.rows.length,
       at: (x, y) => cellAt(x, y, geometry),
+      start: { column: 0, row: Math.max(0, data.rows.findIndex((row) => row.values !== null)) },
     },
     (picked) => props.onPickRow?.(picked.row),
   );
