@@ -1,5 +1,5 @@
 import "server-only";
-import { and, desc, eq } from "drizzle-orm";
+import { and, desc, eq, max } from "drizzle-orm";
 import { database } from "@/db/connection";
 import { newId } from "@/db/new-id";
 import { archives } from "@/db/schema/archives";
@@ -40,7 +40,8 @@ export async function addArchives(actor: Actor, runId: string, files: ReceivedFi
     unused.length = 0;
     const [run] = await transaction.select().from(runs).where(and(eq(runs.id, runId), eq(runs.groupId, actor.groupId))).for("update");
     const results: AddedArchives["archives"] = [];
-    for (const file of files) results.push(await addArchive(transaction, actor, run.id, file, options, unused));
+    let arrival = await nextArrival(transaction, run.id);
+    for (const file of files) results.push(await addArchive(transaction, actor, run.id, file, new Date(arrival++), options, unused));
     const news = results.some(({ duplicate }) => !duplicate);
     return { archives: results, job: news ? { id: await ingestJob(transaction, actor, runId) } : await latestIngest(transaction, actor, runId), duplicate: !news };
   }));
@@ -48,7 +49,7 @@ export async function addArchives(actor: Actor, runId: string, files: ReceivedFi
   return added;
 }
 
-async function addArchive(transaction: Transaction, actor: Actor, runId: string, file: ReceivedFile, options: Options, unused: string[]): Promise<AddedArchives["archives"][number]> {
+async function addArchive(transaction: Transaction, actor: Actor, runId: string, file: ReceivedFile, createdAt: Date, options: Options, unused: string[]): Promise<AddedArchives["archives"][number]> {
   const blobId = await shareBlob(transaction, actor, file, unused);
   const { filename, bytes, sha256 } = file;
   const [known] = await transaction.select().from(archives).where(and(eq(archives.runId, runId), eq(archives.blobId, blobId), eq(archives.role, options.role)));
@@ -68,9 +69,15 @@ async function addArchive(transaction: Transaction, actor: Actor, runId: string,
     timesUs: options.times_us ?? null,
     state: "waiting",
     createdBy: actor.userId,
-    createdAt: new Date(),
+    createdAt,
   });
   return { id, filename, bytes, sha256, duplicate: false };
+}
+
+/** Archives are read in order of arrival, so no two of a run may share a millisecond. */
+async function nextArrival(transaction: Transaction, runId: string): Promise<number> {
+  const [{ latest }] = await transaction.select({ latest: max(archives.createdAt) }).from(archives).where(eq(archives.runId, runId));
+  return Math.max(Date.now(), (latest?.getTime() ?? 0) + 1);
 }
 
 /** Returns the blob that holds these bytes for the group: an earlier one when there is one, and then ours is not needed. */

@@ -33,10 +33,10 @@ export async function downloadArchive(actor: Actor, archiveId: string, request: 
   return new Response(body, {
     headers: {
       "content-type": "application/octet-stream",
-      "content-length": String(row.bytes),
       "content-disposition": attachment(row.filename),
       "x-content-type-options": "nosniff",
-      // Without no-transform the server would compress, and the length would be lost.
+      // The framework sends in chunks and drops a length; the digest (RFC 9530) tells whether all of it arrived.
+      "repr-digest": `sha-256=:${Buffer.from(row.sha256 ?? "", "hex").toString("base64")}:`,
       "cache-control": "private, no-cache, no-transform",
       etag,
     },

@@ -49,12 +49,10 @@ async function receiveRaw(database: Database, groupId: string, filename: string 
 async function receiveMultipart(database: Database, groupId: string, request: Request, stream: Readable, received: ReceivedFile[]): Promise<Problem | null> {
   const parser = makeParser(request);
   if (isProblem(parser)) return parser;
-  const storing: Promise<void>[] = [];
+  const storing: Promise<ReceivedFile>[] = [];
   parser.on("file", (field, file, info) => {
     if (field !== "file") return void file.resume();
-    const stored = storeBytes(database, groupId, file).then((bytes) => {
-      received.push({ filename: safeFilename(info.filename), ...bytes });
-    });
+    const stored = storeBytes(database, groupId, file).then((bytes) => ({ filename: safeFilename(info.filename), ...bytes }));
     // An aborted upload rejects here and in the pipeline; the pipeline's rejection is the one that is answered.
     stored.catch(() => undefined);
     storing.push(stored);
@@ -62,7 +60,8 @@ async function receiveMultipart(database: Database, groupId: string, request: Re
   try {
     await pipeline(stream, parser);
   } finally {
-    await Promise.allSettled(storing);
+    // In the order of the form, whichever was stored first: it is the order in which they are read.
+    for (const outcome of await Promise.allSettled(storing)) if (outcome.status === "fulfilled") received.push(outcome.value);
   }
   await Promise.all(storing);
   return received.length > 0 ? null : emptyUpload(undefined);
