@@ -1,12 +1,16 @@
 const MINUS = "\u2212";
-/** Below this, numbers with an error are written in powers of ten. */
+/** Below this, numbers are written in powers of ten. */
 const SMALLEST_PLAIN = 1e-3;
 const SUPERSCRIPTS = "⁰¹²³⁴⁵⁶⁷⁸⁹";
 
-/** Returns a number with a typeset minus sign, with `digits` significant digits; "–" for null or NaN. */
+/** Returns a number with a typeset minus sign, with `digits` significant digits, small ones in powers of ten; "–" for null or NaN. */
 export function plainNumber(value: number | null | undefined, digits = 4): string {
   if (value === null || value === undefined || Number.isNaN(value)) return "–";
   if (!Number.isFinite(value)) return value > 0 ? "∞" : `${MINUS}∞`;
+  if (value !== 0 && Math.abs(value) < SMALLEST_PLAIN) {
+    const power = Math.floor(Math.log10(Math.abs(value)));
+    return timesPowerOfTen(String(Number((value / 10 ** power).toPrecision(digits))).replace("-", MINUS), power);
+  }
   return String(Number(value.toPrecision(digits))).replace("-", MINUS);
 }
 
@@ -60,8 +64,12 @@ export function byteCount(bytes: number): string {
 
 function inPowersOfTen(value: number, error: number): string {
   const power = Math.floor(Math.log10(Math.max(Math.abs(value), error)));
+  return timesPowerOfTen(withUncertainty(value / 10 ** power, error / 10 ** power), power);
+}
+
+function timesPowerOfTen(digits: string, power: number): string {
   const raised = [...String(Math.abs(power))].map((digit) => SUPERSCRIPTS[Number(digit)]).join("");
-  return `${withUncertainty(value / 10 ** power, error / 10 ** power)}\u202f×\u202f10${power < 0 ? "⁻" : ""}${raised}`;
+  return `${digits}\u202f×\u202f10${power < 0 ? "⁻" : ""}${raised}`;
 }
 
 function shortError(error: number): { digits: number; exponent: number } {

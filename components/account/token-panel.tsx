@@ -22,7 +22,7 @@ export function TokenPanel({ initial }: { initial: TokenRow[] }) {
   const { data, mutate } = useSWR<{ items: TokenRow[] }>(`${PATH}?limit=100`, fetchJson, { fallbackData: { items: initial }, revalidateOnMount: false });
   const tokens = data?.items ?? [];
   return (
-    <div className="grid grid-cols-1 gap-x-12 gap-y-8 lg:grid-cols-[1fr_22rem]">
+    <div className="grid grid-cols-1 gap-x-12 gap-y-8 lg:grid-cols-[minmax(0,48rem)_22rem]">
       <section className="min-w-0">
         <h2>Tokens for scripts</h2>
         <p className="mt-1 mb-3 max-w-[65ch] text-muted">

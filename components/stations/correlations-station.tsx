@@ -11,7 +11,7 @@ import { useUrlState } from "@/components/shell/use-url-state";
 import { plainNumber } from "@/lib/number-text";
 import { ExportLinks } from "./export-links";
 import { TimeSlider } from "./time-slider";
-import { traceLine, traceMap, type TracesAnswer } from "./trace-view";
+import { traceLine, traceMap, traceName, type TracesAnswer } from "./trace-view";
 
 interface CorrelationsStationProps {
   analysisId: string;
@@ -78,7 +78,7 @@ export function CorrelationsStation({ analysisId, siteNames, traces: own }: Corr
             actions={<ExportLinks analysisId={analysisId} figure="map" data="correlators" />}
           />
           <TraceChart
-            title={`C against time, ${traces.labels[trace]}`}
+            title={`C against time, ${traceName(traces, trace, siteNames)}`}
             caption="with its 95 % band"
             line={traceLine(traces, trace)}
             errors={traces.error[trace]}

@@ -9,7 +9,7 @@ import { useUrlState } from "@/components/shell/use-url-state";
 import { isNoFit, type FrontResult } from "@/lib/science/front/front-result";
 import { ExportLinks } from "./export-links";
 import { FitTable } from "./fit-table";
-import { fitCurves, mapCrossings, mapCurves, traceLine, traceMap, type TracesAnswer } from "./trace-view";
+import { fitCurves, mapCrossings, mapCurves, traceLine, traceMap, traceName, type TracesAnswer } from "./trace-view";
 import { VerdictBlock } from "./verdict-block";
 import { VelocityTable } from "./velocity-table";
 
@@ -54,7 +54,7 @@ export function FrontStation({ analysisId, siteNames, traces, front }: FrontStat
       </div>
       <div className="mt-7 grid grid-cols-1 gap-x-8 gap-y-6 lg:grid-cols-3">
         <TraceChart
-          title={`Trace of ${traces.labels[trace]}`}
+          title={`Trace of ${traceName(traces, trace, siteNames)}`}
           caption="pick a row or a point to see another"
           line={traceLine(traces, trace, front.points[trace])}
           errors={traces.error[trace]}

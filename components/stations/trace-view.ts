@@ -80,6 +80,13 @@ function curveOf(name: FrontFitCurve["name"], curve: FrontCurve | null): FrontFi
   };
 }
 
+/** Returns what a trace is called on the page: the site's own name, or its distance. */
+export function traceName(traces: TracesAnswer, trace: number, siteNames: string[]): string {
+  if (traces.kind === "distance" || traces.referenceSite === null) return traces.labels[trace];
+  const site = trace < traces.referenceSite ? trace : trace + 1;
+  return `site ${siteNames[site] ?? site}`;
+}
+
 /** Returns one trace as a line, with its crossing when the front has one. */
 export function traceLine(traces: TracesAnswer, trace: number, point?: FrontPoint): TraceLine {
   return {

@@ -71,3 +71,11 @@ describe("very small values", () => {
     expect(withUncertainty(-4.2e-12, 3e-13)).toBe("\u22124.2(3)\u202f×\u202f10⁻¹²");
   });
 });
+
+describe("plain numbers", () => {
+  it("below a thousandth are written in powers of ten", () => {
+    expect(plainNumber(0.0000017, 2)).toBe("1.7\u202f×\u202f10⁻⁶");
+    expect(plainNumber(0.0012, 2)).toBe("0.0012");
+    expect(plainNumber(0)).toBe("0");
+  });
+});
