@@ -26,9 +26,9 @@ export function AddArchives({ runId, first }: { runId: string; first: boolean })
 
   return (
     <section className="space-y-3">
-      <h2>{first ? "Add the first archive" : "Add archives"}</h2>
+      <h2>{first ? "Add an archive" : "Add archives"}</h2>
       <FileDrop onFiles={(added) => setFiles([...files, ...added.map((file) => ({ file, role: roleFromName(file.name), times_us: "" }))])} disabled={busy}>
-        <p className="text-muted">More shots of the same sites, or calibration shots. They make a new version; the present one stays as it is.</p>
+        <p className="text-muted">{first ? "Shots of this run, or its calibration shots." : "More shots of the same sites, or calibration shots. They make a new version; the present one stays as it is."}</p>
       </FileDrop>
       {files.length > 0 && <PendingFileList files={files} onChange={setFiles} disabled={busy} />}
       <UploadStatus sending={uploads.sending} failure={uploads.failure} onStop={uploads.stop} />

@@ -6,6 +6,7 @@ import { ApiProblem, sendJson } from "@/components/data/fetch-json";
 import { FormField } from "@/components/forms/form-field";
 import { ProblemNotice } from "@/components/shell/problem-notice";
 import type { ProblemPlace } from "@/lib/problem";
+import { siteText } from "./trace-view";
 
 interface AnalysisFormProps {
   runId: string;
@@ -57,7 +58,7 @@ export function AnalysisForm({ runId, siteNames, detections, onStarted }: Analys
             <option value="distance">distance, averaged over pairs</option>
             {siteNames.map((name, site) => (
               <option key={site} value={site}>
-                reference site {name}
+                reference {siteText(name)}
               </option>
             ))}
           </select>

@@ -11,7 +11,7 @@ import { useUrlState } from "@/components/shell/use-url-state";
 import { plainNumber } from "@/lib/number-text";
 import { ExportLinks } from "./export-links";
 import { TimeSlider } from "./time-slider";
-import { traceLine, traceMap, traceName, type TracesAnswer } from "./trace-view";
+import { siteText, traceLine, traceMap, traceName, type TracesAnswer } from "./trace-view";
 
 interface CorrelationsStationProps {
   analysisId: string;
@@ -54,7 +54,7 @@ export function CorrelationsStation({ analysisId, siteNames, traces: own }: Corr
             <option value="distance">distance, averaged over pairs</option>
             {siteNames.map((name, site) => (
               <option key={site} value={site}>
-                reference site {name}
+                reference {siteText(name)}
               </option>
             ))}
           </select>

@@ -9,6 +9,7 @@ import { useUrlState } from "@/components/shell/use-url-state";
 import { DetectionForm } from "./detection-form";
 import { DetectionTable } from "./detection-table";
 import type { DetectionAnswer, HistogramsAnswer } from "./detection-types";
+import { siteText } from "./trace-view";
 
 interface DetectionStationProps {
   runId: string;
@@ -86,7 +87,7 @@ function siteHistograms(answer: HistogramsAnswer | undefined, siteNames: string[
     const found = answer?.sites.find((candidate) => candidate.site === site);
     return {
       site,
-      name: `site ${name}`,
+      name: siteText(name),
       firstBin: found?.firstBin ?? 0,
       frequencies: found?.counts ?? [],
       threshold: detection?.thresholds[site] ?? null,

@@ -48,7 +48,7 @@ export function ShotsStation({ runId, notes, view, archives, mayUpload }: ShotsS
             <p className="mt-1 max-w-[60ch] break-words whitespace-pre-line text-muted">{notes}</p>
           </section>
         )}
-        {mayUpload && <AddArchives runId={runId} first={archives.length === 0} />}
+        {mayUpload && <AddArchives runId={runId} first={view === null} />}
       </aside>
     </div>
   );

@@ -84,7 +84,12 @@ function curveOf(name: FrontFitCurve["name"], curve: FrontCurve | null): FrontFi
 export function traceName(traces: TracesAnswer, trace: number, siteNames: string[]): string {
   if (traces.kind === "distance" || traces.referenceSite === null) return traces.labels[trace];
   const site = trace < traces.referenceSite ? trace : trace + 1;
-  return `site ${siteNames[site] ?? site}`;
+  return siteText(siteNames[site] ?? String(site));
+}
+
+/** Returns a site's name as it reads in a sentence: many archives call their columns "site_3" already. */
+export function siteText(name: string): string {
+  return /^site/i.test(name) ? name : `site ${name}`;
 }
 
 /** Returns one trace as a line, with its crossing when the front has one. */

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { traceMap, traceName, type TracesAnswer } from "@/components/stations/trace-view";
+import { siteText, traceMap, traceName, type TracesAnswer } from "@/components/stations/trace-view";
 
 const traces: TracesAnswer = {
   kind: "reference",
@@ -33,5 +33,11 @@ describe("the map of distance-averaged traces", () => {
     expect(data.rowName).toBe("distance");
     expect(data.rows.map(({ label }) => label)).toEqual(["1", "1.41"]);
     expect(traceOfRow).toEqual([0, 1]);
+  });
+});
+
+describe("a site in a sentence", () => {
+  it("is not called a site twice", () => {
+    expect(["site_3", "ion_3"].map(siteText)).toEqual(["site_3", "site ion_3"]);
   });
 });
