@@ -153,4 +153,38 @@ describe("detections and analyses", () => {
     const { times_us } = await callJson<{ times_us: number[] }>("GET", `/api/v1/analyses/${analysisId}/traces`, { as });
     expect(times_us).toEqual([5, 10, 20]);
   });
+
+  it("read fractional counts as they are, and a bright site as down when the run says so", async () => {
+    const results: { mean: number[][]; value: number[][] }[] = [];
+    for (const [file, brightIs] of [["plain.csv", "up"], ["fractional.csv", "up"], ["plain.csv", "down"]] as const) {
+      const runId = await makeRun(as, { brightIs });
+      await uploadAndRead(as, runId, file, fixture(`malformed/${file}`));
+      const detection = await makeDetection(as, runId, { method: "fixed", threshold: 4.5 });
+      const analysisId = await analyse(as, runId, { detectionId: detection.id, bootstrap: { replicates: 100 } });
+      results.push(await callJson("GET", `/api/v1/analyses/${analysisId}/correlators`, { as }));
+    }
+    const [whole, fractional, down] = results;
+    // fractional.csv is plain.csv with a quarter of a count added everywhere, which moves no count over 4.5.
+    expect(fractional.value).toEqual(whole.value);
+    down.mean.flat().forEach((mean, at) => expect(mean).toBeCloseTo(-whole.mean.flat()[at], 13));
+    down.value.flat().forEach((value, at) => expect(value).toBeCloseTo(whole.value.flat()[at], 13));
+    expect(whole.value.flat().some((value) => value !== 0)).toBe(true);
+  });
+
+  it("by distance, unbiased and with BCa intervals hold together", async () => {
+    const runId = await readRun();
+    const detection = await makeDetection(as, runId, { method: "fixed", threshold: 4.5 });
+    const plugIn = await analyse(as, runId, { detectionId: detection.id, bootstrap: { replicates: 400 }, traces: { kind: "distance" } });
+    const unbiased = await analyse(as, runId, { detectionId: detection.id, estimator: "unbiased", bootstrap: { replicates: 400, interval: "bca" }, traces: { kind: "distance", bulk: [0, 1, 2] } });
+    const correlators = (id: string) => callJson<{ value: number[][]; low: number[][]; high: number[][]; pairs: [number, number][] }>("GET", `/api/v1/analyses/${id}/correlators`, { as });
+    const [first, second] = [await correlators(plugIn), await correlators(unbiased)];
+    // 20 shots a time: M/(M − 1) = 20/19.
+    first.value.flat().forEach((value, at) => expect(second.value.flat()[at]).toBeCloseTo((value * 20) / 19, 12));
+    const traces = (id: string) => callJson<{ distances: number[]; value: number[][] }>("GET", `/api/v1/analyses/${id}/traces`, { as });
+    const all = await traces(plugIn);
+    expect(all.distances).toEqual([1, 2, 3]);
+    const neighbours = first.pairs.flatMap(([i, j], pair) => (j - i === 1 ? [pair] : []));
+    all.value[0].forEach((value, k) => expect(value).toBeCloseTo(neighbours.reduce((sum, pair) => sum + first.value[k][pair], 0) / 3, 12));
+    expect((await traces(unbiased)).distances).toEqual([1, 2]);
+  });
 });
