@@ -3,7 +3,7 @@ import { Readable } from "node:stream";
 import { pipeline } from "node:stream/promises";
 import type { ReadableStream as WebStream } from "node:stream/web";
 import busboy from "busboy";
-import { database as openDatabase, type Database } from "@/db/connection";
+import { database } from "@/db/connection";
 import type { Actor } from "@/lib/accounts/policy";
 import { isProblem, problem, type Problem } from "@/lib/problem";
 import { safeFilename } from "./safe-filename";
@@ -13,27 +13,35 @@ export interface ReceivedFile extends StoredBytes {
   filename: string;
 }
 
+/** Stores one file of a request; the next may begin while the last chunks of this one are still being written. */
+type Store = (bytes: Readable, filename: string | undefined) => Promise<ReceivedFile>;
+
 const MOST_FILES = 100;
 
 /**
- * Stores the files of a request, multipart field `file` or raw body, as they come. When the request breaks off, nothing of
- * it is kept.
+ * Stores the files of a request, multipart field `file` or raw body, as they come, and returns them in the order they were
+ * sent. When the request breaks off or is refused, nothing of it is kept.
  */
 export async function receiveFiles({ groupId }: Pick<Actor, "groupId">, request: Request, filename: string | undefined): Promise<ReceivedFile[] | Problem> {
-  const database = openDatabase();
   if (!request.body) return emptyUpload(filename);
-  const stream = Readable.fromWeb(request.body as unknown as WebStream);
-  const received: ReceivedFile[] = [];
+  const body = Readable.fromWeb(request.body as unknown as WebStream);
+  const storing: Promise<ReceivedFile>[] = [];
+  const store: Store = (bytes, name) => {
+    // A stream may break before its first byte is asked for; whoever reads it hears of that, and nobody else has to.
+    bytes.on("error", () => undefined);
+    const stored = storeBytes(database(), groupId, bytes).then((kept) => ({ ...kept, filename: safeFilename(name) }));
+    storing.push(stored);
+    return stored;
+  };
   try {
     const multipart = /^multipart\/form-data\b/i.test(request.headers.get("content-type") ?? "");
-    const refused = multipart
-      ? await receiveMultipart(database, groupId, request, stream, received)
-      : await receiveRaw(database, groupId, filename, stream, received);
+    const refused = multipart ? await storeForm(request, body, store) : await store(body, filename).then(() => null);
+    const received = await Promise.all(storing);
     const fault = refused ?? emptyFile(received);
-    if (fault) await forget(database, received);
+    if (fault) await forget(storing);
     return fault ?? received;
   } catch (error) {
-    await forget(database, received);
+    await forget(storing);
     if (request.signal.aborted || isBrokenUpload(error)) {
       return problem("malformed-request", "The upload ended before it was complete; nothing of it was kept.", [{ where: "body", message: "ended early" }]);
     }
@@ -41,30 +49,23 @@ export async function receiveFiles({ groupId }: Pick<Actor, "groupId">, request:
   }
 }
 
-async function receiveRaw(database: Database, groupId: string, filename: string | undefined, stream: Readable, received: ReceivedFile[]): Promise<null> {
-  received.push({ filename: safeFilename(filename), ...(await storeBytes(database, groupId, stream)) });
-  return null;
-}
-
-async function receiveMultipart(database: Database, groupId: string, request: Request, stream: Readable, received: ReceivedFile[]): Promise<Problem | null> {
+async function storeForm(request: Request, body: Readable, store: Store): Promise<Problem | null> {
   const parser = makeParser(request);
   if (isProblem(parser)) return parser;
-  const storing: Promise<ReceivedFile>[] = [];
+  let files = 0;
+  let tooMany = false;
+  parser.on("filesLimit", () => {
+    tooMany = true;
+  });
   parser.on("file", (field, file, info) => {
     if (field !== "file") return void file.resume();
-    const stored = storeBytes(database, groupId, file).then((bytes) => ({ filename: safeFilename(info.filename), ...bytes }));
-    // An aborted upload rejects here and in the pipeline; the pipeline's rejection is the one that is answered.
-    stored.catch(() => undefined);
-    storing.push(stored);
+    files += 1;
+    // The parser waits for ever for a file that nobody reads on: what stops one file stops the form.
+    store(file, info.filename).catch((error: Error) => body.destroy(error));
   });
-  try {
-    await pipeline(stream, parser);
-  } finally {
-    // In the order of the form, whichever was stored first: it is the order in which they are read.
-    for (const outcome of await Promise.allSettled(storing)) if (outcome.status === "fulfilled") received.push(outcome.value);
-  }
-  await Promise.all(storing);
-  return received.length > 0 ? null : emptyUpload(undefined);
+  await pipeline(body, parser);
+  if (tooMany) return problem("too-large", `One request takes at most ${MOST_FILES} files; nothing of it was kept.`, [{ where: "file", message: `more than ${MOST_FILES} files` }]);
+  return files > 0 ? null : emptyUpload(undefined);
 }
 
 function makeParser(request: Request): busboy.Busboy | Problem {
@@ -91,6 +92,9 @@ function isBrokenUpload(error: unknown): boolean {
   return code === "ERR_STREAM_PREMATURE_CLOSE" || code === "ECONNRESET" || error.name === "AbortError" || /Unexpected end|aborted|terminated|Malformed/i.test(error.message);
 }
 
-async function forget(database: Database, received: ReceivedFile[]): Promise<void> {
-  for (const { blobId } of received) await removeBlob(database, blobId);
+/** Removes what was stored; a file that failed has removed itself. */
+async function forget(storing: Promise<ReceivedFile>[]): Promise<void> {
+  for (const outcome of await Promise.allSettled(storing)) {
+    if (outcome.status === "fulfilled") await removeBlob(database(), outcome.value.blobId);
+  }
 }
