@@ -1,16 +1,14 @@
 import "server-only";
-import { and, desc, eq, max } from "drizzle-orm";
+import { and, eq, max } from "drizzle-orm";
 import { database } from "@/db/connection";
 import { newId } from "@/db/new-id";
 import { archives } from "@/db/schema/archives";
 import { blobs } from "@/db/schema/blobs";
-import { jobs } from "@/db/schema/jobs";
-import { runs } from "@/db/schema/runs";
 import { inTransaction, type Transaction } from "@/db/transaction";
 import { refusal, type Actor } from "@/lib/accounts/policy";
-import { enqueueJob } from "@/lib/jobs/enqueue-job";
 import { isProblem, type Problem } from "@/lib/problem";
-import { findRunInGroup } from "@/lib/runs/find-run";
+import { findRunInGroup, lockRunInGroup } from "@/lib/runs/find-run";
+import { isStranded, latestReading, requestReading } from "@/lib/runs/request-reading";
 import type { UploadQuery } from "./archive-schemas";
 import type { ReceivedFile } from "./receive-files";
 import { removeBlob } from "./store-bytes";
@@ -18,10 +16,11 @@ import { removeBlob } from "./store-bytes";
 export interface AddedArchives {
   archives: { id: string; filename: string; bytes: number; sha256: string; duplicate: boolean }[];
   job: { id: string } | null;
-  /** Every file was part of the run already; nothing was stored and nothing will be read. */
+  /** Every file was part of the run already, and nothing was stored. */
   duplicate: boolean;
 }
 
+type AddedArchive = AddedArchives["archives"][number];
 type Options = Pick<UploadQuery, "role" | "times_us">;
 
 /** Returns why the member may not add archives to this run, before a byte is read; null when they may. */
@@ -34,22 +33,23 @@ export async function uploadRefusal(actor: Actor, runId: string): Promise<Proble
 
 /** Makes received files archives of a run and has them read: acknowledged only when bytes, rows and job are durable. */
 export async function addArchives(actor: Actor, runId: string, files: ReceivedFile[], options: Options): Promise<AddedArchives | Problem> {
-  const refused = await uploadRefusal(actor, runId);
+  const refused = refusal(actor, "archive.upload");
   const unused: string[] = [];
   const added = refused ?? (await inTransaction(database(), async (transaction) => {
     unused.length = 0;
-    const [run] = await transaction.select().from(runs).where(and(eq(runs.id, runId), eq(runs.groupId, actor.groupId))).for("update");
-    const results: AddedArchives["archives"] = [];
-    let arrival = await nextArrival(transaction, run.id);
-    for (const file of files) results.push(await addArchive(transaction, actor, run.id, file, new Date(arrival++), options, unused));
-    const news = results.some(({ duplicate }) => !duplicate);
-    return { archives: results, job: news ? { id: await ingestJob(transaction, actor, runId) } : await latestIngest(transaction, actor, runId), duplicate: !news };
+    // The run may have been removed while its archives were on their way.
+    const run = await lockRunInGroup(transaction, actor, runId);
+    if (isProblem(run)) return run;
+    const results: AddedArchive[] = [];
+    for (const file of files) results.push(await addArchive(transaction, actor, runId, file, options, unused));
+    const duplicate = results.every((result) => result.duplicate);
+    return { archives: results, job: await readingOf(transaction, actor, runId, duplicate), duplicate };
   }));
   for (const blobId of isProblem(added) ? files.map((file) => file.blobId) : unused) await removeBlob(database(), blobId);
   return added;
 }
 
-async function addArchive(transaction: Transaction, actor: Actor, runId: string, file: ReceivedFile, createdAt: Date, options: Options, unused: string[]): Promise<AddedArchives["archives"][number]> {
+async function addArchive(transaction: Transaction, actor: Actor, runId: string, file: ReceivedFile, options: Options, unused: string[]): Promise<AddedArchive> {
   const blobId = await shareBlob(transaction, actor, file, unused);
   const { filename, bytes, sha256 } = file;
   const [known] = await transaction.select().from(archives).where(and(eq(archives.runId, runId), eq(archives.blobId, blobId), eq(archives.role, options.role)));
@@ -69,15 +69,15 @@ async function addArchive(transaction: Transaction, actor: Actor, runId: string,
     timesUs: options.times_us ?? null,
     state: "waiting",
     createdBy: actor.userId,
-    createdAt,
+    createdAt: await nextArrival(transaction, runId),
   });
   return { id, filename, bytes, sha256, duplicate: false };
 }
 
-/** Archives are read in order of arrival, so no two of a run may share a millisecond. */
-async function nextArrival(transaction: Transaction, runId: string): Promise<number> {
-  const [{ latest }] = await transaction.select({ latest: max(archives.createdAt) }).from(archives).where(eq(archives.runId, runId));
-  return Math.max(Date.now(), (latest?.getTime() ?? 0) + 1);
+/** Archives are read in the order of their arrival, so no two of a run share a moment. The run is locked meanwhile. */
+async function nextArrival(transaction: Transaction, runId: string): Promise<Date> {
+  const [last] = await transaction.select({ at: max(archives.createdAt) }).from(archives).where(eq(archives.runId, runId));
+  return new Date(Math.max(Date.now(), (last?.at?.getTime() ?? 0) + 1));
 }
 
 /** Returns the blob that holds these bytes for the group: an earlier one when there is one, and then ours is not needed. */
@@ -95,23 +95,9 @@ async function shareBlob(transaction: Transaction, actor: Actor, file: ReceivedF
   return file.blobId;
 }
 
-/** A reading that still waits will see the new archives too; one that runs has looked already. */
-async function ingestJob(transaction: Transaction, actor: Actor, runId: string): Promise<string> {
-  const [waiting] = await transaction
-    .select({ id: jobs.id })
-    .from(jobs)
-    .where(and(eq(jobs.runId, runId), eq(jobs.groupId, actor.groupId), eq(jobs.kind, "ingest"), eq(jobs.state, "queued")))
-    .limit(1)
-    .for("update", { skipLocked: true });
-  return waiting?.id ?? enqueueJob(transaction, { groupId: actor.groupId, userId: actor.userId, payload: { kind: "ingest", runId } });
-}
-
-async function latestIngest(transaction: Transaction, actor: Actor, runId: string): Promise<{ id: string } | null> {
-  const [under] = await transaction
-    .select({ id: jobs.id })
-    .from(jobs)
-    .where(and(eq(jobs.runId, runId), eq(jobs.groupId, actor.groupId), eq(jobs.kind, "ingest")))
-    .orderBy(desc(jobs.createdAt))
-    .limit(1);
-  return under ?? null;
+/** The same bytes again start a reading only when the one they had was cancelled or given up. */
+async function readingOf(transaction: Transaction, actor: Actor, runId: string, duplicate: boolean): Promise<{ id: string } | null> {
+  if (!duplicate || (await isStranded(transaction, actor, runId))) return { id: await requestReading(transaction, actor, runId) };
+  const latest = await latestReading(transaction, actor, runId);
+  return latest === null ? null : { id: latest };
 }

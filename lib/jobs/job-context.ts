@@ -28,5 +28,8 @@ export interface RefusedJob {
   record?: (transaction: Transaction) => Promise<void>;
 }
 
+/** Writes down, together with a job's end, that it was given up after breaking too often. */
+export type GivenUpRecord = (transaction: Transaction, job: JobRow, problem: Problem) => Promise<void>;
+
 /** Does a job; answers why it was refused, or null when it called `finish`. */
 export type JobHandler = (job: JobRow, context: JobContext) => Promise<RefusedJob | null>;

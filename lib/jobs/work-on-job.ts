@@ -3,11 +3,11 @@ import { setTimeout as sleep } from "node:timers/promises";
 import type { Tinypool } from "tinypool";
 import type { Database } from "@/db/connection";
 import { logUnexpected } from "@/lib/http/log-unexpected";
-import { problem, type Problem } from "@/lib/problem";
+import { problem } from "@/lib/problem";
 import { MOST_ATTEMPTS } from "./claim-job";
-import { cancelHeld, failHeld, finishHeld, heartbeat, LockLost, refuseHeld, returnHeld, type HeldJob } from "./held-job";
+import { cancelHeld, finishHeld, heartbeat, LockLost, refuseHeld, returnHeld, type HeldJob } from "./held-job";
 import { TryLater } from "./run-lock";
-import type { JobContext, JobHandler, JobRow, RefusedJob } from "./job-context";
+import type { GivenUpRecord, JobContext, JobHandler, JobRow, RefusedJob } from "./job-context";
 
 const HEARTBEAT_MS = 3_000;
 const PROGRESS_MS = 200;
@@ -20,14 +20,16 @@ interface Work {
   database: Database;
   pool: Tinypool;
   handlers: Record<JobRow["kind"], JobHandler>;
+  givenUpRecords: Partial<Record<JobRow["kind"], GivenUpRecord>>;
   /** Aborts when the worker is to end. */
   workerEnds: AbortSignal;
 }
 
 /** Does one claimed job to its end, whatever that is: done, refused, cancelled, given back, or lost to another worker. */
-export async function workOnJob(job: JobRow, lockOwner: string, { database, pool, handlers, workerEnds }: Work): Promise<void> {
+export async function workOnJob(job: JobRow, lockOwner: string, { database, pool, handlers, givenUpRecords, workerEnds }: Work): Promise<void> {
   const held: HeldJob = { id: job.id, lockOwner };
-  if (job.attempts > MOST_ATTEMPTS) return failHeld(database, held, exhausted());
+  const giveUp = () => refuseHeld(database, held, givenUp(job, givenUpRecords[job.kind]));
+  if (job.attempts > MOST_ATTEMPTS) return giveUp();
   const stop = new AbortController();
   const pulse = startPulse(database, held, stop);
   const onWorkerEnd = () => stop.abort("worker ends" satisfies Stop);
@@ -46,7 +48,7 @@ export async function workOnJob(job: JobRow, lockOwner: string, { database, pool
   const outcome = await attempt(handlers[job.kind], job, context, stop);
   await pulse.end();
   workerEnds.removeEventListener("abort", onWorkerEnd);
-  await settle(database, held, job, outcome).catch((error: unknown) => {
+  await settle(database, held, job, outcome, giveUp).catch((error: unknown) => {
     if (!(error instanceof LockLost)) throw error;
   });
 }
@@ -66,18 +68,19 @@ async function attempt(handler: JobHandler, job: JobRow, context: JobContext, st
   }
 }
 
-async function settle(database: Database, held: HeldJob, job: JobRow, outcome: Outcome): Promise<void> {
+async function settle(database: Database, held: HeldJob, job: JobRow, outcome: Outcome, giveUp: () => Promise<void>): Promise<void> {
   if (outcome.kind === "refused") return refuseHeld(database, held, outcome.refused);
   if (outcome.kind === "stopped" && outcome.stop === "cancelled") return cancelHeld(database, held);
   if (outcome.kind === "stopped" && outcome.stop === "worker ends") return returnHeld(database, held, job.attempts - 1, 0);
   if (outcome.kind === "later") return returnHeld(database, held, job.attempts - 1, outcome.delay_ms);
   if (outcome.kind !== "fault") return;
-  if (job.attempts >= MOST_ATTEMPTS) return failHeld(database, held, exhausted());
+  if (job.attempts >= MOST_ATTEMPTS) return giveUp();
   return returnHeld(database, held, job.attempts, RETRY_DELAY_MS * job.attempts);
 }
 
-function exhausted(): Problem {
-  return problem("conflict", `This job broke ${MOST_ATTEMPTS} times and was given up. Its cause is in the worker's log; starting it again is safe.`);
+function givenUp(job: JobRow, record: GivenUpRecord | undefined): RefusedJob {
+  const exhausted = problem("conflict", `This job broke ${MOST_ATTEMPTS} times and was given up. Its cause is in the worker's log; starting it again is safe.`);
+  return { problem: exhausted, record: (transaction) => record?.(transaction, job, exhausted) ?? Promise.resolve() };
 }
 
 /** Keeps saying that the job is alive and where it stands; a cancel wish or a lost lock aborts the work. */

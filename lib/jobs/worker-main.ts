@@ -5,8 +5,9 @@ import { closeDatabase, database } from "@/db/connection";
 import { newId } from "@/db/new-id";
 import { sweepAbandonedBlobs } from "@/lib/archives/sweep-abandoned-blobs";
 import { logUnexpected } from "@/lib/http/log-unexpected";
+import { sweepOrphans } from "@/lib/runs/sweep-orphans";
 import { claimJob } from "./claim-job";
-import { JOB_HANDLERS } from "./job-handlers";
+import { GIVEN_UP_RECORDS, JOB_HANDLERS } from "./job-handlers";
 import { workOnJob } from "./work-on-job";
 import { announceWorker } from "./worker-presence";
 
@@ -27,12 +28,13 @@ async function work(ends: AbortSignal): Promise<void> {
     try {
       if (Date.now() - sweptAt > SWEEP_EVERY_MS) {
         await sweepAbandonedBlobs(database());
+        await sweepOrphans(database());
         sweptAt = Date.now();
       }
       // A lock owner of its own for every claim: a job that comes back to the same worker cannot be written by its former self.
       const lockOwner = newId();
       const job = await claimJob(database(), lockOwner);
-      if (job) await workOnJob(job, lockOwner, { database: database(), pool, handlers: JOB_HANDLERS, workerEnds: ends });
+      if (job) await workOnJob(job, lockOwner, { database: database(), pool, handlers: JOB_HANDLERS, givenUpRecords: GIVEN_UP_RECORDS, workerEnds: ends });
       pause_ms = job ? 0 : IDLE_MS;
     } catch (error) {
       logUnexpected("worker", error);

@@ -1,7 +1,8 @@
 import "server-only";
-import { and, eq, gt, gte } from "drizzle-orm";
+import { and, eq, gt, gte, sql } from "drizzle-orm";
 import { readBytes, writeBytes } from "@/db/blobs";
 import type { Database } from "@/db/connection";
+import { runs } from "@/db/schema/runs";
 import { shotBlocks } from "@/db/schema/shot-blocks";
 import { countTypeOf, packBlock, unpackBlock, type CountType, type ShotBlock } from "./shot-block";
 
@@ -43,7 +44,9 @@ export async function removeBlocks(database: Database, { runId, version }: Versi
     .where(and(eq(shotBlocks.runId, runId), eq(shotBlocks.version, version), eq(shotBlocks.timeSlot, slot), gte(shotBlocks.seq, fromSeq)));
 }
 
-/** Removes what a reading that was killed left behind: blocks of versions that never became visible. */
-export async function removeLeftovers(database: Database, runId: string, currentVersion: number): Promise<void> {
-  await database.delete(shotBlocks).where(and(eq(shotBlocks.runId, runId), gt(shotBlocks.version, currentVersion)));
+/** Removes what a reading left behind that did not come to its end: blocks of versions that never became visible. */
+export async function removeLeftovers(database: Database, runId: string): Promise<void> {
+  // Asked in the same statement: a version that has become visible meanwhile is never touched; without the run, nothing stays.
+  const visible = sql`coalesce((select ${runs.currentVersion} from ${runs} where ${runs.id} = ${runId}), 0)`;
+  await database.delete(shotBlocks).where(and(eq(shotBlocks.runId, runId), gt(shotBlocks.version, visible)));
 }

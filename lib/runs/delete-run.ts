@@ -14,16 +14,15 @@ import { siteHistograms } from "@/db/schema/site-histograms";
 import { inTransaction, type Transaction } from "@/db/transaction";
 import { refusal, type Actor } from "@/lib/accounts/policy";
 import { isProblem, type Problem } from "@/lib/problem";
-import { findRunInGroup } from "./find-run";
+import { lockRunInGroup } from "./find-run";
 
 /** Removes a run with its versions, detections, analyses and archives; bytes another run of the group uses stay. */
 export async function deleteRun(actor: Actor, runId: string): Promise<null | Problem> {
   const refused = refusal(actor, "run.delete");
   if (refused) return refused;
   return inTransaction(database(), async (transaction) => {
-    const run = await findRunInGroup(transaction, actor, runId);
+    const run = await lockRunInGroup(transaction, actor, runId);
     if (isProblem(run)) return run;
-    await transaction.select({ id: runs.id }).from(runs).where(eq(runs.id, runId)).for("update");
     // A worker that is at one of these jobs loses its lock with the row, and can write nothing afterwards.
     await transaction.delete(jobs).where(and(eq(jobs.runId, runId), eq(jobs.groupId, actor.groupId)));
     await removeResults(transaction, runId);

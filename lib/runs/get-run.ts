@@ -7,7 +7,7 @@ import { runs } from "@/db/schema/runs";
 import { users } from "@/db/schema/users";
 import { refusal, type Actor } from "@/lib/accounts/policy";
 import { problem, type Problem } from "@/lib/problem";
-import { findCurrentVersion, ingestUnderWay } from "./find-run";
+import { findCurrentVersion, ingestUnderWay, latestJobId } from "./find-run";
 import { showRun, type ArchiveWithBytes, type ShownRun } from "./show-run";
 
 /** Returns a run of the member's group with its current version and archives. */
@@ -19,13 +19,13 @@ export async function getRun(actor: Actor, runId: string): Promise<ShownRun | Pr
 /** The same without asking for the right to read: what a member may make or change, it is shown as the answer. */
 export async function getRunInGroup(actor: Pick<Actor, "groupId">, runId: string): Promise<ShownRun | Problem> {
   const [row] = await database()
-    .select({ run: runs, createdBy: users.name, ingesting: ingestUnderWay() })
+    .select({ run: runs, createdBy: users.name, ingesting: ingestUnderWay(), latestJobId: latestJobId() })
     .from(runs)
     .innerJoin(users, eq(users.id, runs.createdBy))
     .where(and(eq(runs.id, runId), eq(runs.groupId, actor.groupId)));
   if (!row) return problem("not-found", "There is no such run.");
   const [version, archiveRows] = await Promise.all([findCurrentVersion(database(), row.run), listArchives(actor, runId)]);
-  return showRun({ run: row.run, version, archives: archiveRows, createdBy: row.createdBy, ingesting: Boolean(row.ingesting) });
+  return showRun({ ...row, version, archives: archiveRows, ingesting: Boolean(row.ingesting) });
 }
 
 function listArchives(actor: Pick<Actor, "groupId">, runId: string): Promise<ArchiveWithBytes[]> {

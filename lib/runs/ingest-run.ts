@@ -10,38 +10,51 @@ import type { Transaction } from "@/db/transaction";
 import { enqueueJob } from "@/lib/jobs/enqueue-job";
 import { withRunLock } from "@/lib/jobs/run-lock";
 import type { JobContext, JobRow, RefusedJob } from "@/lib/jobs/job-context";
-import { invalidAt } from "@/lib/problem";
+import { invalidAt, type Problem } from "@/lib/problem";
 import { removeLeftovers, type VersionKey } from "./block-store";
 import type { RunRow } from "./find-run";
 import { readArchives, type ReadableArchive, type ReadRun, type RefusedArchive } from "./read-archives";
 import { versionWarnings } from "./version-warnings";
 
-type ArchiveToRead = ReadableArchive & { sha256: string };
+type ArchiveToRead = ReadableArchive & { sha256: string; state: "waiting" | "read" | "refused" };
 
 /**
  * Reads all archives of a run, in order of arrival, into a new version that becomes visible in one step. A broken archive
- * is refused with the place named, and the run stays as it was.
+ * is refused with the place named, and the run stays as it was. Nothing is read when no archive waits.
  */
 export function ingestRun(job: JobRow, context: JobContext): Promise<RefusedJob | null> {
-  return withRunLock(context.database, job.runId, () => readRun(job, context));
+  return withRunLock(context.database, job.runId, async () => {
+    const clear = () => removeLeftovers(context.database, job.runId);
+    await clear();
+    try {
+      const refused = await readRun(job, context);
+      if (refused) await clear();
+      return refused;
+    } catch (error) {
+      await clear();
+      throw error;
+    }
+  });
+}
+
+/** Writes to the run why its reading was given up. */
+export async function recordGivenUp(transaction: Transaction, { runId, groupId }: JobRow, problem: Problem): Promise<void> {
+  await transaction.update(runs).set({ lastProblem: problem, updatedAt: new Date() }).where(and(eq(runs.id, runId), eq(runs.groupId, groupId)));
 }
 
 async function readRun(job: JobRow, context: JobContext): Promise<RefusedJob | null> {
   const [run] = await context.database.select().from(runs).where(and(eq(runs.id, job.runId), eq(runs.groupId, job.groupId)));
   if (!run) return { problem: invalidAt("run", "has been removed") };
   const toRead = await archivesToRead(context, run);
-  const key: VersionKey = { runId: run.id, version: run.currentVersion + 1 };
-  const clear = () => removeLeftovers(context.database, run.id, run.currentVersion);
-  await clear();
-  const read = await readArchives(toRead, { ...context, key }).catch(async (error: unknown) => {
-    await clear();
-    throw error;
-  });
-  const checked = "problem" in read ? read : (misplaced(run, read, toRead) ?? read);
-  if ("problem" in checked) {
-    await clear();
-    return refuse(job, run, checked);
+  // Archives that came while the reading before this one began were taken in by it.
+  if (!toRead.some(({ state }) => state === "waiting")) {
+    await context.finish(async () => ({ version: run.currentVersion }));
+    return null;
   }
+  const key: VersionKey = { runId: run.id, version: run.currentVersion + 1 };
+  const read = await readArchives(toRead, { ...context, key });
+  const checked = "problem" in read ? read : (misplaced(run, read, toRead) ?? read);
+  if ("problem" in checked) return refuse(job, run, checked);
   context.progress("storing", 0.99);
   await context.finish(async (transaction) => {
     await showVersion(transaction, run, key, toRead, checked);

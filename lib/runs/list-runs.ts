@@ -11,7 +11,7 @@ import { refusal, type Actor } from "@/lib/accounts/policy";
 import { afterCursor } from "@/lib/http/after-cursor";
 import { pageOf, type Cursor, type Page } from "@/lib/http/page-query";
 import type { Problem } from "@/lib/problem";
-import { ingestUnderWay } from "./find-run";
+import { ingestUnderWay, latestJobId } from "./find-run";
 import { showRun, type ArchiveWithBytes, type ShownRun } from "./show-run";
 
 /** Returns the runs of the member's group, newest first. */
@@ -19,7 +19,7 @@ export async function listRuns(actor: Actor, page: { cursor?: Cursor; limit: num
   const refused = refusal(actor, "run.read");
   if (refused) return refused;
   const rows = await database()
-    .select({ run: runs, version: runVersions, createdBy: users.name, ingesting: ingestUnderWay() })
+    .select({ run: runs, version: runVersions, createdBy: users.name, ingesting: ingestUnderWay(), latestJobId: latestJobId() })
     .from(runs)
     .innerJoin(users, eq(users.id, runs.createdBy))
     .leftJoin(runVersions, and(eq(runVersions.runId, runs.id), eq(runVersions.number, runs.currentVersion)))
@@ -28,8 +28,8 @@ export async function listRuns(actor: Actor, page: { cursor?: Cursor; limit: num
     .limit(page.limit + 1);
   const archivesOf = await archivesByRun(actor, rows.map(({ run }) => run.id));
   const withCursor = rows.map((row) => ({ ...row, createdAt: row.run.createdAt, id: row.run.id }));
-  return pageOf(withCursor, page.limit, ({ run, version, createdBy, ingesting }) =>
-    showRun({ run, version, createdBy, ingesting: Boolean(ingesting), archives: archivesOf.get(run.id) ?? [] }),
+  return pageOf(withCursor, page.limit, ({ ingesting, ...row }) =>
+    showRun({ ...row, ingesting: Boolean(ingesting), archives: archivesOf.get(row.run.id) ?? [] }),
   );
 }
 

@@ -42,6 +42,7 @@ export const RunAnswer = z.object({
   warnings: z.array(z.object({ code: z.string(), message: z.string() })),
   archives: z.array(ArchiveAnswer),
   problem: ProblemBody.nullable().meta({ description: "Why the latest reading was refused; the version before it stands" }),
+  latestJobId: z.string().nullable().meta({ description: "The latest reading or analysis of the run" }),
   createdBy: z.string(),
   createdAt: z.iso.datetime(),
   updatedAt: z.iso.datetime(),

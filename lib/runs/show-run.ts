@@ -30,10 +30,11 @@ export interface RunParts {
   archives: ArchiveWithBytes[];
   createdBy: string;
   ingesting: boolean;
+  latestJobId: string | null;
 }
 
 /** A run as the API shows it. */
-export function showRun({ run, version, archives: rows, createdBy, ingesting }: RunParts) {
+export function showRun({ run, version, archives: rows, createdBy, ingesting, latestJobId }: RunParts) {
   return {
     id: run.id,
     title: run.title,
@@ -57,6 +58,7 @@ export function showRun({ run, version, archives: rows, createdBy, ingesting }: 
     warnings: version?.warnings ?? [],
     archives: rows.map(showArchive),
     problem: run.lastProblem ? problemDocument(run.lastProblem) : null,
+    latestJobId,
     createdBy,
     createdAt: run.createdAt.toISOString(),
     updatedAt: run.updatedAt.toISOString(),

@@ -3,6 +3,7 @@ import { CreateAnalysisInput } from "@/lib/analyses/analysis-schemas";
 import { createAnalysis } from "@/lib/analyses/create-analysis";
 import { createDetection } from "@/lib/detections/create-detection";
 import { fixture } from "../api/product";
+import { longCsv } from "./csv-files";
 import { blocksHash, killed, must, ownWorld, resultsHash, runWithArchive, untilJob, type OwnWorld } from "./own-world";
 
 const ARCHIVE = "straight-front-24/shots.npz";
@@ -69,8 +70,7 @@ describe("a reading", () => {
     await killed(whole);
 
     const first = world.startWorker();
-    // One byte more makes it another archive; the shots are the same.
-    const disturbed = await runWithArchive(world.actor, "long.csv", new Uint8Array([...bytes, 10]));
+    const disturbed = await runWithArchive(world.actor, "long.csv", longCsv(1));
     await untilJob(world.actor, disturbed.jobId, ({ state, progress }) => state === "running" && progress > 0.1 && progress < 0.9);
     await killed(first);
     const second = world.startWorker();
@@ -82,12 +82,3 @@ describe("a reading", () => {
     await killed(second);
   });
 });
-
-/** A CSV large enough that its reading takes a while: 12 sites, 20 times, 20 000 shots each. */
-function longCsv(): Uint8Array {
-  const lines = [`time_us,shot,${Array.from({ length: 12 }, (_, i) => `s${i}`).join(",")}`];
-  for (let k = 0; k < 20; k++) {
-    for (let s = 0; s < 20_000; s++) lines.push(`${5 * (k + 1)},${s},${Array.from({ length: 12 }, (_, i) => (s * 7 + i * 3 + k) % 17).join(",")}`);
-  }
-  return new TextEncoder().encode(`${lines.join("\n")}\n`);
-}

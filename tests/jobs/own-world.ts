@@ -24,6 +24,8 @@ export interface OwnWorld {
   actor: Actor;
   url: string;
   startWorker: (environment?: Record<string, string>) => ChildProcess;
+  /** Kills all workers that still run. */
+  killWorkers: () => Promise<void>;
   end: () => Promise<void>;
 }
 
@@ -38,6 +40,7 @@ export async function ownWorld(): Promise<OwnWorld> {
   process.env.DATABASE_URL = url;
   await migrateDatabase(url, "migrations");
   const workers: ChildProcess[] = [];
+  const killWorkers = async () => void (await Promise.all(workers.map(killed)));
   return {
     url,
     actor: await makeActor(),
@@ -49,8 +52,9 @@ export async function ownWorld(): Promise<OwnWorld> {
       workers.push(worker);
       return worker;
     },
+    killWorkers,
     end: async () => {
-      await Promise.all(workers.map(killed));
+      await killWorkers();
       await closeDatabase();
       await server.query(`DROP DATABASE ${name}`);
       await server.end();
