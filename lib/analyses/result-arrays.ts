@@ -2,6 +2,7 @@ import "server-only";
 import { eq } from "drizzle-orm";
 import { readBytes, writeBytes } from "@/db/blobs";
 import type { Database } from "@/db/connection";
+import { analyses } from "@/db/schema/analyses";
 import { resultArrays } from "@/db/schema/result-arrays";
 
 const PART_BYTES = 8 * 1024 * 1024;
@@ -67,7 +68,11 @@ async function readRange(database: Database, analysisId: string, name: string, o
   return joined.subarray(start, length === Infinity ? undefined : start + length);
 }
 
-/** Removes what an attempt that was killed may have left. */
-export async function removeArrays(database: Database, analysisId: string): Promise<void> {
-  await database.delete(resultArrays).where(eq(resultArrays.analysisId, analysisId));
+/**
+ * Removes the results of an analysis that was removed while they were being written. Those of one that exists stay: another
+ * worker may have finished it.
+ */
+export async function removeArraysOfNobody(database: Database, analysisId: string): Promise<void> {
+  const owners = await database.select({ id: analyses.id }).from(analyses).where(eq(analyses.id, analysisId));
+  if (owners.length === 0) await database.delete(resultArrays).where(eq(resultArrays.analysisId, analysisId));
 }

@@ -13,7 +13,7 @@ import type { TracePlan } from "@/lib/science/correlators/trace-plan";
 import type { FrontAnalysis } from "@/lib/science/front/analyse-front";
 import type { TraceSet } from "@/lib/science/front/trace-set";
 import { planTraces, readoutOf } from "./plan-analysis";
-import { removeArrays } from "./result-arrays";
+import { removeArraysOfNobody } from "./result-arrays";
 import { storeResults } from "./store-results";
 import { summarise } from "./summarise";
 import type { FrontMessage, TimeMessage } from "./thread-task";
@@ -41,21 +41,26 @@ export async function runAnalysisJob(job: JobRow, context: JobContext): Promise<
   if (isProblem(plan)) return { problem: plan };
   const readout = parameters.readoutCorrection ? readoutOf(sites, provenance.brightIs, seed, replicates) : null;
   if (isProblem(readout)) return { problem: readout };
-  await removeArrays(context.database, analysis.id);
   const results = await analyseTimes(inputs, plan, readout, context);
   context.progress("crossings, fits and verdict", CORRELATOR_SHARE);
   const traces = collectTraces(plan, Float64Array.from(version.timesUs), results, replicates);
   const front = await runFront(traces, parameters, context);
   context.progress("storing", 0.97);
-  await storeResults(context.database, analysis.id, { plan, parameters, results, traces, front });
   context.signal.throwIfAborted();
-  await context.finish(async (transaction) => {
-    await transaction
-      .update(analyses)
-      .set({ summary: summarise(front.front, results), finishedAt: new Date() })
-      .where(eq(analyses.id, analysis.id));
-    return { analysisId: analysis.id };
-  });
+  try {
+    // An earlier attempt may have written some of these; the same bytes replace themselves.
+    await storeResults(context.database, analysis.id, { plan, parameters, results, traces, front });
+    await context.finish(async (transaction) => {
+      await transaction
+        .update(analyses)
+        .set({ summary: summarise(front.front, results), finishedAt: new Date() })
+        .where(eq(analyses.id, analysis.id));
+      return { analysisId: analysis.id };
+    });
+  } catch (error) {
+    await removeArraysOfNobody(context.database, analysis.id);
+    throw error;
+  }
   return null;
 }
 
