@@ -1,4 +1,4 @@
-import { csvText } from "@/lib/formats/csv-cell";
+import { csvComment } from "@/lib/formats/csv-cell";
 import type { AnalysisRow } from "./find-analysis";
 
 /** Returns what an analysis depends on, one `name: value` a line, for the head of every export. */
@@ -18,10 +18,10 @@ export function provenanceLines({ analysis, runTitle, createdByName }: AnalysisR
   ];
 }
 
-/** Returns the lines as the commented head of a CSV file; text from members cannot start a cell that a spreadsheet runs. */
+/** Returns the lines as the commented head of a CSV file. */
 export function csvHead(row: AnalysisRow): string {
   return provenanceLines(row)
-    .map((line) => `# ${csvText(line).replace(/^"|"$/g, "")}\n`)
+    .map((line) => `${csvComment(line)}\n`)
     .join("");
 }
 

@@ -10,3 +10,11 @@ export function csvText(text: string): string {
 export function csvNumber(value: number | null): string {
   return value === null || Number.isNaN(value) ? "" : String(value);
 }
+
+/**
+ * Returns a text as a comment line. Spreadsheets know no comments and cut the line into cells: a piece they would run as a formula
+ * gets an apostrophe before it, and quotes become apostrophes, so that no quote hides where a cell begins.
+ */
+export function csvComment(text: string): string {
+  return `# ${text.replaceAll('"', "'").replace(/([,;\t] *)(?=[=+\-@])/g, "$1'")}`;
+}
