@@ -128,6 +128,7 @@ export const tracesEndpoint = endpoint({
         error: z.array(Numbers),
         low: z.array(Numbers),
         high: z.array(Numbers),
+        fewFlips: z.array(z.array(z.boolean())),
       }),
     },
   },

@@ -19,11 +19,11 @@ export function correlatorsCsv(row: AnalysisRow, correlators: Correlators): stri
 
 /** Returns the map as CSV, one row a trace and time. */
 export function tracesCsv(row: AnalysisRow, traces: Traces): string {
-  const lines = [`${csvHead(row)}trace,distance,time_us,value,error,low,high`];
+  const lines = [`${csvHead(row)}trace,distance,time_us,value,error,low,high,few_flips`];
   traces.labels.forEach((label, trace) =>
     traces.times_us.forEach((time, k) => {
       const numbers = [traces.value, traces.error, traces.low, traces.high].map((array) => csvNumber(array[trace][k]));
-      lines.push(`${csvText(label)},${traces.distances[trace]},${time},${numbers.join(",")}`);
+      lines.push(`${csvText(label)},${traces.distances[trace]},${time},${numbers.join(",")},${Number(traces.fewFlips[trace][k])}`);
     }),
   );
   return `${lines.join("\n")}\n`;
@@ -31,11 +31,12 @@ export function tracesCsv(row: AnalysisRow, traces: Traces): string {
 
 /** Returns the front as CSV: the points, with fits and verdict in the head. */
 export function frontCsv(row: AnalysisRow, front: FrontResult): string {
-  const fits = [`# verdict: ${front.verdict}`, ...fitLines("linear", front.linear), ...fitLines("power law", front.powerLaw)].join("\n");
-  const lines = [`${csvHead(row)}${fits}\nlabel,distance,time_us,error_us,low_us,high_us,status,failed_share,fitted`];
+  const warnings = front.warnings.map((warning) => `# warning: ${warning}`);
+  const fits = [`# verdict: ${front.verdict}`, ...fitLines("linear", front.linear), ...fitLines("power law", front.powerLaw), ...warnings].join("\n");
+  const lines = [`${csvHead(row)}${fits}\nlabel,distance,time_us,error_us,low_us,high_us,status,failed_share,fitted,warnings`];
   for (const point of front.points) {
     const numbers = [point.time_us, point.error_us, point.low_us, point.high_us].map(csvNumber);
-    lines.push(`${csvText(point.label)},${point.distance},${numbers.join(",")},${point.status},${csvNumber(point.failedShare)},${Number(point.fitted)}`);
+    lines.push(`${csvText(point.label)},${point.distance},${numbers.join(",")},${point.status},${csvNumber(point.failedShare)},${Number(point.fitted)},${point.warnings.join(" ")}`);
   }
   return `${lines.join("\n")}\n`;
 }

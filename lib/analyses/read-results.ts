@@ -1,7 +1,8 @@
 import "server-only";
 import { database } from "@/db/connection";
-import { invalidAt, type Problem } from "@/lib/problem";
-import { listPairs, pairCount, pairIndex } from "@/lib/science/correlators/pairs";
+import { invalidAt, isProblem, problem, type Problem } from "@/lib/problem";
+import { listPairs, pairCount } from "@/lib/science/correlators/pairs";
+import type { TracePlan } from "@/lib/science/correlators/trace-plan";
 import type { FrontResult } from "@/lib/science/front/front-result";
 import { planTraces } from "./plan-analysis";
 import type { AnalysisRow } from "./find-analysis";
@@ -10,6 +11,9 @@ import type { StoredPlan } from "./store-results";
 
 /** Numbers as JSON has them: null where there is no number. */
 export type Numbers = (number | null)[];
+
+/** So many times and pairs fit into one answer: JSON text has at most 512 MB. */
+const MOST_CELLS = 3_000_000;
 
 export interface Correlators {
   times_us: number[];
@@ -40,6 +44,8 @@ export interface Traces {
   error: Numbers[];
   low: Numbers[];
   high: Numbers[];
+  /** `[trace][t]`, true where any pair of the trace has few flips. */
+  fewFlips: boolean[][];
 }
 
 /** Returns means and all pairs, at every time or at one. */
@@ -50,6 +56,7 @@ export async function readCorrelators(row: AnalysisRow, timeIndex?: number): Pro
   const first = timeIndex ?? 0;
   const count = timeIndex === undefined ? times : 1;
   const pairs = pairCount(sites);
+  if (count * pairs > MOST_CELLS) return problem("too-large", `${count} times of ${pairs} pairs are too much for one answer; ask for one time after another with ?time_index=.`);
   const rows = async (name: string, width: number) => inRows(await readArray(database(), row.analysis.id, name, first * width, count * width), width);
   const marks = await readMarks(database(), row.analysis.id, "fewFlips");
   const list = listPairs(sites);
@@ -73,6 +80,9 @@ export async function readTraces(row: AnalysisRow): Promise<Traces> {
   const id = row.analysis.id;
   const plan = await readJson<StoredPlan>(database(), id, "plan");
   const times = row.timesUs.length;
+  const { parameters, provenance } = row.analysis;
+  const tracePlan = planTraces(parameters.traces, provenance.positions);
+  if (isProblem(tracePlan)) throw new Error(`the traces of analysis ${id} cannot be planned again: ${tracePlan.detail}`);
   const rows = async (name: string) => inRows(await readArray(database(), id, name), times);
   return {
     ...plan,
@@ -81,6 +91,7 @@ export async function readTraces(row: AnalysisRow): Promise<Traces> {
     error: await rows("traceError"),
     low: await rows("traceLow"),
     high: await rows("traceHigh"),
+    fewFlips: await readTraceMarks(row, pairsOfTraces(tracePlan)),
   };
 }
 
@@ -88,10 +99,9 @@ export async function readTraces(row: AnalysisRow): Promise<Traces> {
 export async function readReferenceTraces(row: AnalysisRow, reference: number): Promise<Traces | Problem> {
   const sites = row.siteNames.length;
   if (reference >= sites) return invalidAt("reference", `the run has sites 0 to ${sites - 1}`);
-  const others = Array.from({ length: sites }, (_, j) => j).filter((j) => j !== reference);
   const plan = planTraces({ kind: "reference", site: reference }, row.analysis.provenance.positions);
-  if ("_tag" in plan) return plan;
-  const columns = others.map((j) => [pairIndex(sites, Math.min(reference, j), Math.max(reference, j))]);
+  if (isProblem(plan)) return plan;
+  const columns = pairsOfTraces(plan);
   const pick = async (name: string) => pickMeans(await readArray(database(), row.analysis.id, name), pairCount(sites), columns);
   return {
     kind: "reference",
@@ -103,17 +113,31 @@ export async function readReferenceTraces(row: AnalysisRow, reference: number): 
     error: await pick("error"),
     low: await pick("low"),
     high: await pick("high"),
+    fewFlips: await readTraceMarks(row, columns),
   };
 }
 
 /** Returns distance-averaged traces from the saved pairs: values only, since errors of averages need joint replicates. */
 export async function readDistanceTraces(row: AnalysisRow): Promise<Traces | Problem> {
   const plan = planTraces({ kind: "distance" }, row.analysis.provenance.positions);
-  if ("_tag" in plan) return plan;
-  const columns = plan.labels.map((_, trace) => Array.from(plan.pairs.subarray(plan.offsets[trace], plan.offsets[trace + 1])));
+  if (isProblem(plan)) return plan;
+  const columns = pairsOfTraces(plan);
   const value = pickMeans(await readArray(database(), row.analysis.id, "value"), pairCount(row.siteNames.length), columns);
   const none = value.map((trace) => trace.map(() => null));
-  return { kind: "distance", referenceSite: null, labels: plan.labels, distances: Array.from(plan.distances), times_us: row.timesUs, value, error: none, low: none, high: none };
+  const fewFlips = await readTraceMarks(row, columns);
+  return { kind: "distance", referenceSite: null, labels: plan.labels, distances: Array.from(plan.distances), times_us: row.timesUs, value, error: none, low: none, high: none, fewFlips };
+}
+
+/** `[trace]`, the pair indices of each trace. */
+function pairsOfTraces({ labels, offsets, pairs }: TracePlan): number[][] {
+  return labels.map((_, trace) => Array.from(pairs.subarray(offsets[trace], offsets[trace + 1])));
+}
+
+/** `[trace][t]`, true where any pair of the trace is marked. */
+async function readTraceMarks(row: AnalysisRow, pairsOfTrace: number[][]): Promise<boolean[][]> {
+  const marks = await readMarks(database(), row.analysis.id, "fewFlips");
+  const width = pairCount(row.siteNames.length);
+  return pairsOfTrace.map((pairs) => row.timesUs.map((_, k) => pairs.some((pair) => marks[k * width + pair] === 1)));
 }
 
 export function readFront(row: AnalysisRow): Promise<FrontResult> {
