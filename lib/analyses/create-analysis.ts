@@ -13,7 +13,7 @@ import { invalidAt, isProblem, problem, type Problem } from "@/lib/problem";
 import { findRunInGroup, type RunRow, type RunVersionRow } from "@/lib/runs/find-run";
 import type { CreateAnalysisInput } from "./analysis-schemas";
 import { positionsOf } from "./analysis-positions";
-import { planTraces, readoutOf, replicatesProblem } from "./plan-analysis";
+import { planTraces, readoutOf, replicatesProblem, sitesProblem } from "./plan-analysis";
 import { PROGRAM_VERSION } from "./program-version";
 
 export interface StartedAnalysis {
@@ -81,7 +81,8 @@ async function findDetection(executor: Executor, actor: Actor, run: RunRow, dete
 
 function checkParameters(parameters: AnalysisParameters, sites: DetectionRow["sites"], run: RunRow, version: RunVersionRow, positions: number[][]): Problem | null {
   if (positions.length !== version.sites) return invalidAt("positions", `the run gives ${positions.length} positions for ${version.sites} sites`);
-  if (version.sites < 2) return invalidAt("sites", "a correlator needs at least two sites");
+  const unfit = sitesProblem(version.sites);
+  if (unfit) return unfit;
   const plan = planTraces(parameters.traces, positions);
   if (isProblem(plan)) return plan;
   const tooLarge = replicatesProblem(plan, version.timesUs.length, parameters.bootstrap.replicates);

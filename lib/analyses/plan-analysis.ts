@@ -6,6 +6,8 @@ import type { BrightIs } from "@/lib/science/correlators/packed-spins";
 import { invalidAt, problem, type Problem } from "@/lib/problem";
 import { positionColumns } from "./analysis-positions";
 
+/** All pairs are counted at once in a thread's memory; twice the largest arrays there are. */
+const MOST_SITES = 512;
 /** Joint replicates of all traces are held at once for the front. */
 const MOST_REPLICATE_BYTES = 1.5 * 1024 ** 3;
 
@@ -18,7 +20,14 @@ export function planTraces(traces: AnalysisParameters["traces"], positions: numb
   }
   const outside = traces.bulk?.find((site) => site >= sites);
   if (outside !== undefined) return invalidAt("traces.bulk", `there is no site ${outside}; the run has sites 0 to ${sites - 1}`);
+  if (traces.bulk && new Set(traces.bulk).size < 2) return invalidAt("traces.bulk", "needs at least two different sites");
   return planDistanceTraces(positionColumns(positions), traces.bulk);
+}
+
+/** Returns a Problem when a run has too few sites for a correlator, or too many for all pairs. */
+export function sitesProblem(sites: number): Problem | null {
+  if (sites < 2) return invalidAt("sites", "a correlator needs at least two sites");
+  return sites > MOST_SITES ? invalidAt("sites", `all pairs of ${sites} sites are too many; an analysis takes at most ${MOST_SITES}`) : null;
 }
 
 /** Returns a Problem when the joint replicates would not fit into memory. */

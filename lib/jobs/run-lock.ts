@@ -23,7 +23,10 @@ export async function withRunLock<T>(database: Database, runId: string, work: ()
     if (rows[0]?.got !== 1) throw new TryLater(DELAY_MS);
     return await work();
   } finally {
-    await connection.query("SELECT RELEASE_LOCK(?)", [name]).catch(() => undefined);
-    connection.release();
+    // A connection that may still hold the lock must not go back to the pool: nobody could read the run any more.
+    await connection.query("SELECT RELEASE_LOCK(?)", [name]).then(
+      () => connection.release(),
+      () => connection.destroy(),
+    );
   }
 }

@@ -53,12 +53,12 @@ async function readRun(job: JobRow, context: JobContext): Promise<RefusedJob | n
   }
   const key: VersionKey = { runId: run.id, version: run.currentVersion + 1 };
   const read = await readArchives(toRead, { ...context, key });
-  const checked = "problem" in read ? read : (misplaced(run, read, toRead) ?? read);
+  const checked = "problem" in read ? read : (incomplete(read, toRead) ?? misplaced(run, read, toRead) ?? read);
   if ("problem" in checked) return refuse(job, run, checked);
   context.progress("storing", 0.99);
   await context.finish(async (transaction) => {
-    await showVersion(transaction, run, key, toRead, checked);
-    return { version: key.version, shotsKept: checked.collector?.times().reduce((sum, { shots }) => sum + shots, 0) ?? 0 };
+    const version = await showVersion(transaction, run, key, toRead, checked);
+    return { version, shotsKept: checked.collector?.times().reduce((sum, { shots }) => sum + shots, 0) ?? 0 };
   });
   return null;
 }
@@ -71,6 +71,13 @@ async function archivesToRead({ database }: JobContext, run: RunRow): Promise<Ar
     .where(and(eq(archives.runId, run.id), eq(archives.groupId, run.groupId), inArray(archives.state, ["waiting", "read"])))
     .orderBy(asc(archives.createdAt), asc(archives.id));
   return rows.map(({ archive, bytes, sha256 }) => ({ ...archive, bytes, sha256: sha256 ?? "" }));
+}
+
+/** Shots that are all set aside make no run; without a word it would just stay empty. */
+function incomplete({ collector }: ReadRun, toRead: ArchiveToRead[]): RefusedArchive | null {
+  const last = toRead.findLast(({ role }) => role === "shots");
+  if (!last || (collector && collector.times().length > 0)) return null;
+  return { archiveId: last.id, problem: invalidAt(last.filename, "has no shot with all its counts") };
 }
 
 function misplaced(run: RunRow, read: ReadRun, toRead: ArchiveToRead[]): RefusedArchive | null {
@@ -93,13 +100,14 @@ function refuse(job: JobRow, run: RunRow, { archiveId, problem }: RefusedArchive
   };
 }
 
-async function showVersion(transaction: Transaction, run: RunRow, key: VersionKey, read: ArchiveToRead[], { collector, ...found }: ReadRun): Promise<void> {
+/** Returns the number of the version that stands now. */
+async function showVersion(transaction: Transaction, run: RunRow, key: VersionKey, read: ArchiveToRead[], { collector, ...found }: ReadRun): Promise<number> {
   for (const [order, archive] of read.entries()) {
     await transaction.update(archives).set({ state: "read", format: found.formats[order], problem: null }).where(eq(archives.id, archive.id));
   }
   const times = collector?.times() ?? [];
   // Calibration shots alone make no version: they are read again together with the first shots.
-  if (!collector || times.length === 0) return;
+  if (!collector || times.length === 0) return run.currentVersion;
   const shotsPerTime = times.map(({ shots }) => shots);
   const histograms = collector.histograms.get("shots") ?? [];
   await transaction.insert(runVersions).values({
@@ -127,4 +135,5 @@ async function showVersion(transaction: Transaction, run: RunRow, key: VersionKe
     }
   }
   await transaction.update(runs).set({ currentVersion: key.version, lastProblem: null, updatedAt: new Date() }).where(eq(runs.id, run.id));
+  return key.version;
 }

@@ -44,6 +44,8 @@ interface Reading {
 /** A file may grow this much when it is expanded; counts compress well, but not without end. */
 const MOST_EXPANSION = 250;
 const FREE_EXPANSION_BYTES = 256 * 1024 * 1024;
+/** Every time has a writer of its own; ten times what a run may have. */
+const MOST_TIMES = 10_000;
 
 /** Reads archives in order into blocks of a new version; stops at the first that is broken or does not fit the others. */
 export async function readArchives(archives: ReadableArchive[], reading: Reading): Promise<ReadRun | RefusedArchive> {
@@ -88,6 +90,12 @@ async function readArchive(archive: ReadableArchive, run: ReadRun, reading: Read
     run.collector ??= new ShotCollector(reading.database, reading.key, step.value.sites);
     run.sites = step.value.sites;
     await run.collector.add(step.value);
+    const { timeCount } = run.collector;
+    if (timeCount > MOST_TIMES) {
+      const tooMany = invalidAt(archive.filename, `more than ${MOST_TIMES} evolution times; is its time column the time of day?`);
+      await batches.return(tooMany);
+      return tooMany;
+    }
   }
 }
 

@@ -65,6 +65,11 @@ export class ShotCollector {
       .sort((first, second) => first.time_us - second.time_us);
   }
 
+  /** How many evolution times have been met. */
+  get timeCount(): number {
+    return this.slotOfTime.size;
+  }
+
   shotsIn(slot: number): number {
     return this.slots.get(slot)?.writer.shots ?? 0;
   }
