@@ -34,8 +34,7 @@ export async function ownWorld(): Promise<OwnWorld> {
   const served = process.env.DATABASE_URL;
   if (!served) throw new Error("DATABASE_URL is not set; `npm test` sets it");
   const name = `strandline_${newId()}`;
-  const server = await createConnection({ uri: served });
-  await server.query(`CREATE DATABASE ${name} CHARACTER SET utf8mb4 COLLATE utf8mb4_unicode_ci`);
+  await runAt(served, `CREATE DATABASE ${name} CHARACTER SET utf8mb4 COLLATE utf8mb4_unicode_ci`);
   const url = served.replace(/\/[^/?]+(\?|$)/, `/${name}$1`);
   process.env.DATABASE_URL = url;
   await migrateDatabase(url, "migrations");
@@ -56,11 +55,17 @@ export async function ownWorld(): Promise<OwnWorld> {
     end: async () => {
       await killWorkers();
       await closeDatabase();
-      await server.query(`DROP DATABASE ${name}`);
-      await server.end();
+      await runAt(served, `DROP DATABASE ${name}`);
       process.env.DATABASE_URL = served;
     },
   };
+}
+
+/** On a connection of its own: the server may have been restarted since the last one. */
+async function runAt(url: string, statement: string): Promise<void> {
+  const connection = await createConnection({ uri: url });
+  await connection.query(statement);
+  await connection.end();
 }
 
 async function makeActor(): Promise<Actor> {
