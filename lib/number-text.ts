@@ -1,3 +1,5 @@
+import { lastDigitOf } from "@/lib/science/front/short-form";
+
 const MINUS = "\u2212";
 /** Below this, numbers are written in powers of ten. */
 const SMALLEST_PLAIN = 1e-3;
@@ -28,7 +30,8 @@ export function fixedNumber(value: number | null | undefined, decimals: number):
 export function withUncertainty(value: number | null | undefined, error: number | null | undefined): string {
   if (value === null || value === undefined || !Number.isFinite(value)) return "–";
   if (error === null || error === undefined || !Number.isFinite(error) || error <= 0) return plainNumber(value);
-  const { digits, exponent } = shortError(error);
+  const exponent = lastDigitOf(error);
+  const digits = Math.round(error / 10 ** exponent);
   if (Math.max(Math.abs(value), error) < SMALLEST_PLAIN) return inPowersOfTen(value, error);
   if (exponent > 0) {
     const scale = 10 ** exponent;
@@ -70,12 +73,4 @@ function inPowersOfTen(value: number, error: number): string {
 function timesPowerOfTen(digits: string, power: number): string {
   const raised = [...String(Math.abs(power))].map((digit) => SUPERSCRIPTS[Number(digit)]).join("");
   return `${digits}\u202f×\u202f10${power < 0 ? "⁻" : ""}${raised}`;
-}
-
-function shortError(error: number): { digits: number; exponent: number } {
-  let exponent = Math.floor(Math.log10(error));
-  const leading = Math.round(error / 10 ** (exponent - 1));
-  if (leading < 20) exponent -= 1;
-  const digits = Math.round(error / 10 ** exponent);
-  return digits === 100 ? { digits: 10, exponent: exponent + 1 } : { digits, exponent };
 }

@@ -10,6 +10,7 @@ import { CellCanvas } from "./cell-canvas";
 import { ChartFigure } from "./chart-figure";
 import { screenTheme } from "./chart-theme";
 import { mapGeometry } from "./map-geometry";
+import { siteText } from "./site-text";
 import { useCursor } from "./use-cursor";
 import { useMeasuredWidth } from "./use-measured-width";
 
@@ -63,7 +64,7 @@ export function BrightnessChart({ title, caption, siteNames, times_us, brightnes
       readOut={
         cursor && (
           <>
-            site {siteNames[cursor.row]}, t = {plainNumber(times_us[cursor.column], 6)} µs: <strong className="text-ink">{plainNumber(brightness[cursor.column][cursor.row])} counts a shot</strong>, {groupedCount(shotsPerTime[cursor.column])} shots kept
+            {siteText(siteNames[cursor.row])}, t = {plainNumber(times_us[cursor.column], 6)} µs: <strong className="text-ink">{plainNumber(brightness[cursor.column][cursor.row])} counts a shot</strong>, {groupedCount(shotsPerTime[cursor.column])} shots kept
           </>
         )
       }

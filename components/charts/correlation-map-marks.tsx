@@ -61,7 +61,7 @@ function RowLabels({ data, geometry, theme }: { data: MapData; geometry: MapGeom
       <line x1={geometry.area.left} x2={geometry.area.left} y1={geometry.area.top} y2={geometry.area.bottom} stroke={theme.rule} />
       {data.rows.map((row, r) =>
         r % every === 0 ? (
-          <text key={row.label} x={geometry.area.left - 7} y={round(geometry.rowMiddle(r))} dy="0.34em" className="figures">
+          <text key={r} x={geometry.area.left - 7} y={round(geometry.rowMiddle(r))} dy="0.34em" className="figures">
             {row.label}
           </text>
         ) : null,

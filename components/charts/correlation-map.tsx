@@ -11,6 +11,7 @@ import { CorrelationMapMarks } from "./correlation-map-marks";
 import { divergingColour } from "./diverging-colours";
 import type { FrontCurve, MapCrossing } from "./front-overlay";
 import { colourLimit, mapGeometry, type MapData } from "./map-geometry";
+import { siteText } from "./site-text";
 import { useCursor, type Cursor } from "./use-cursor";
 import { useMeasuredWidth } from "./use-measured-width";
 
@@ -60,6 +61,7 @@ export function CorrelationMap(props: CorrelationMapViewProps) {
       title={props.title}
       caption={props.caption}
       actions={props.actions}
+      hint={props.onPickRow && "Point, touch or use the arrow keys to read values; a click or Enter picks the row."}
       readOut={cursor && readOut(data, props.errors, cursor)}
       table={() => <MapTable data={data} errors={props.errors} />}
     >
@@ -124,12 +126,13 @@ function cellAt(x: number, y: number, geometry: ReturnType<typeof mapGeometry>):
 function readOut(data: MapData, errors: CorrelationMapViewProps["errors"], cursor: Cursor): ReactNode {
   const row = data.rows[cursor.row];
   const time = plainNumber(data.times_us[cursor.column], 6);
-  if (!row.values) return `${data.rowName} ${row.label} is the reference itself; C with it is its variance and is not drawn.`;
+  const name = data.rowName === "site" ? siteText(row.label) : `${data.rowName} ${row.label}`;
+  if (!row.values) return `${name} is the reference itself; C with it is its variance and is not drawn.`;
   const value = withUncertainty(row.values[cursor.column], errors?.[cursor.row]?.[cursor.column]);
   const distance = row.distance === null || data.rowName === "distance" ? "" : `, distance ${plainNumber(row.distance)}`;
   return (
     <>
-      {data.rowName} {row.label}
+      {name}
       {distance}, t = {time} µs: <strong className="text-ink">C = {value}</strong>
     </>
   );
@@ -150,7 +153,7 @@ function MapTable({ data, errors }: { data: MapData; errors: CorrelationMapViewP
       </thead>
       <tbody>
         {data.rows.map((row, r) => (
-          <tr key={row.label}>
+          <tr key={r}>
             <th scope="row">{row.label}</th>
             {data.times_us.map((time, k) => (
               <td key={time} className="text-right whitespace-nowrap">

@@ -46,9 +46,13 @@ export function frontGeometry(points: FrontPoint[], curves: FrontFitCurve[], siz
   };
 }
 
+/** From here on the points are smaller, so that they stay apart. */
+const MANY_POINTS = 30;
+
 /** Distance against crossing time with both fits and their bands; unresolved points are hollow. */
 export function FrontChartMarks({ points, curves, size, theme, preview = false }: FrontChartProps) {
   const geometry = frontGeometry(points, curves, size);
+  const radius = points.length > MANY_POINTS ? 2.4 : 3.6;
   return (
     <>
       <AxisLeft scale={geometry.distance} area={geometry.area} label="distance (sites)" theme={theme} />
@@ -56,8 +60,8 @@ export function FrontChartMarks({ points, curves, size, theme, preview = false }
       {curves.map((curve) => (
         <CurveMarks key={curve.name} curve={curve} geometry={geometry} theme={theme} preview={preview} />
       ))}
-      {points.map((point) => (
-        <PointMark key={point.label} point={point} geometry={geometry} theme={theme} />
+      {points.map((point, p) => (
+        <PointMark key={`${p} ${point.label}`} radius={radius} point={point} geometry={geometry} theme={theme} />
       ))}
     </>
   );
@@ -88,17 +92,17 @@ function CurveMarks({ curve, geometry, theme, preview }: { curve: FrontFitCurve;
   );
 }
 
-function PointMark({ point, geometry, theme }: { point: FrontPoint; geometry: Geometry; theme: ChartTheme }) {
+function PointMark({ point, radius, geometry, theme }: { point: FrontPoint; radius: number; geometry: Geometry; theme: ChartTheme }) {
   if (point.time_us === null) return null;
   const { time, distance } = geometry;
   const y = round(distance(point.distance));
   const resolved = point.status === "resolved";
   return (
-    <g stroke={theme.front} strokeWidth={1.4}>
+    <g stroke={theme.front} strokeWidth={radius > 3 ? 1.4 : 0.9}>
       {point.low_us !== null && point.high_us !== null && (
         <line x1={round(time(point.low_us))} x2={round(time(point.high_us))} y1={y} y2={y} opacity={resolved ? 1 : 0.5} />
       )}
-      <circle cx={round(time(point.time_us))} cy={y} r={3.6} fill={resolved ? theme.front : theme.paper} />
+      <circle cx={round(time(point.time_us))} cy={y} r={radius} fill={resolved ? theme.front : theme.paper} />
     </g>
   );
 }

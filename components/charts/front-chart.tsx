@@ -41,6 +41,7 @@ export function FrontChart({ title, caption, points, curves, height, preview = f
       title={title}
       caption={caption}
       actions={actions}
+      hint={onPick && "Point, touch or use the arrow keys to read values; a click or Enter shows the trace."}
       readOut={point && <PointReadOut point={point} />}
       table={() => <PointTable points={points} />}
     >
@@ -89,8 +90,8 @@ function PointTable({ points }: { points: FrontPoint[] }) {
         </tr>
       </thead>
       <tbody>
-        {points.map((point) => (
-          <tr key={point.label}>
+        {points.map((point, p) => (
+          <tr key={p}>
             <th scope="row">{point.label}</th>
             <td>{plainNumber(point.distance)}</td>
             <td>{withUncertainty(point.time_us, point.error_us)}</td>

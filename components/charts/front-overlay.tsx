@@ -57,16 +57,17 @@ function CrossingMark({ crossing, geometry, theme }: { crossing: MapCrossing; ge
   const y = round(geometry.rowMiddle(crossing.row));
   const x = round(geometry.time(crossing.time_us));
   const radius = Math.min(4.2, Math.max(2, geometry.rowHeight * 0.3));
+  const spread = Math.min(1.6, Math.max(0.7, geometry.rowHeight * 0.13));
   const [low, high] = [crossing.low_us, crossing.high_us];
   return (
     <g>
       {low !== null && high !== null && high > low && (
         <>
-          <line x1={round(geometry.time(low))} x2={round(geometry.time(high))} y1={y} y2={y} stroke={theme.paper} strokeWidth={4} opacity={0.85} />
-          <line x1={round(geometry.time(low))} x2={round(geometry.time(high))} y1={y} y2={y} stroke={theme.front} strokeWidth={1.6} />
+          <line x1={round(geometry.time(low))} x2={round(geometry.time(high))} y1={y} y2={y} stroke={theme.paper} strokeWidth={2.5 * spread} opacity={0.85} />
+          <line x1={round(geometry.time(low))} x2={round(geometry.time(high))} y1={y} y2={y} stroke={theme.front} strokeWidth={round(spread)} />
         </>
       )}
-      <circle cx={x} cy={y} r={radius} fill={crossing.resolved ? theme.front : theme.paper} stroke={crossing.resolved ? theme.paper : theme.front} strokeWidth={1.4} />
+      <circle cx={x} cy={y} r={radius} fill={crossing.resolved ? theme.front : theme.paper} stroke={crossing.resolved ? theme.paper : theme.front} strokeWidth={Math.min(1.4, radius * 0.4)} />
     </g>
   );
 }

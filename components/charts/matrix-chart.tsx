@@ -8,6 +8,7 @@ import { CellCanvas } from "./cell-canvas";
 import { ChartFigure } from "./chart-figure";
 import { divergingColour } from "./diverging-colours";
 import { plotArea } from "./plot-area";
+import { siteText } from "./site-text";
 import { useCursor } from "./use-cursor";
 import { useMeasuredWidth } from "./use-measured-width";
 
@@ -20,11 +21,13 @@ interface MatrixChartProps {
   error: (i: number, j: number) => number | null;
   limit: number;
   largest: number;
+  /** The numbers belong to another time still; the picture keeps its place, paler. */
+  loading: boolean;
   actions?: ReactNode;
 }
 
 /** The full matrix C_ij at one time; the diagonal is left as ground. */
-export function MatrixChart({ title, caption, siteNames, value, error, limit, largest, actions }: MatrixChartProps) {
+export function MatrixChart({ title, caption, siteNames, value, error, limit, largest, loading, actions }: MatrixChartProps) {
   const [container, width] = useMeasuredWidth<HTMLDivElement>(360);
   const themeName = useThemeName();
   const sites = siteNames.length;
@@ -44,6 +47,7 @@ export function MatrixChart({ title, caption, siteNames, value, error, limit, la
     },
   });
   const everyRow = Math.max(1, Math.ceil(15 / (geometry.area.height / sites)));
+  const roomForName = (i: number) => geometry.column(i + 0.5) + labelWidth(siteNames) / 2 <= side + 4;
   const everyColumn = Math.max(1, Math.ceil(labelWidth(siteNames) / (geometry.area.width / sites)));
   return (
     <ChartFigure
@@ -53,17 +57,17 @@ export function MatrixChart({ title, caption, siteNames, value, error, limit, la
       readOut={
         cursor &&
         (cursor.row === cursor.column ? (
-          `site ${siteNames[cursor.row]} with itself is a variance, not a correlation.`
+          `${siteText(siteNames[cursor.row])} with itself is a variance, not a correlation.`
         ) : (
           <>
-            sites {siteNames[cursor.column]} and {siteNames[cursor.row]}:{" "}
+            {siteText(siteNames[cursor.column])} and {siteText(siteNames[cursor.row])}:{" "}
             <strong className="text-ink">C = {withUncertainty(value(cursor.row, cursor.column), error(cursor.row, cursor.column))}</strong>
           </>
         ))
       }
       table={() => <MatrixTable siteNames={siteNames} value={value} error={error} />}
     >
-      <div ref={container} style={{ height: side }}>
+      <div ref={container} aria-busy={loading} className={`transition-opacity ${loading ? "opacity-50" : ""}`} style={{ height: side }}>
         <div className="relative" style={{ width: side, height: side }}>
           <CellCanvas size={geometry.size} columnEdges={geometry.columnEdges} rowEdges={geometry.rowEdges} colour={colour} />
           <svg {...handlers} role="img" aria-label={`${title}: ${sites} by ${sites} sites. Arrow keys move the read-out.`} className="absolute inset-0 touch-pan-y" width={side} height={side}>
@@ -71,7 +75,7 @@ export function MatrixChart({ title, caption, siteNames, value, error, limit, la
             <g fontSize={11} fill="var(--muted)" className="figures">
               {siteNames.map((name, i) => (
                 <g key={name + i}>
-                  {i % everyColumn === 0 && (
+                  {i % everyColumn === 0 && roomForName(i) && (
                     <text x={geometry.column(i + 0.5)} y={geometry.area.bottom + 14} textAnchor="middle">
                       {shortName(name)}
                     </text>

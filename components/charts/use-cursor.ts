@@ -51,7 +51,8 @@ export function useCursor(grid: Grid, onPick?: (cursor: Cursor) => void) {
   const handlers = {
     onPointerMove,
     onPointerDown: onPointerMove,
-    onPointerLeave: () => setCursor(null),
+    // A lifted finger leaves too, but what it pointed at should stay to be read.
+    onPointerLeave: (event: PointerEvent<SVGSVGElement>) => event.pointerType === "mouse" && setCursor(null),
     onKeyDown,
     onBlur: () => setCursor(null),
     onClick: () => inside && onPick?.(inside),

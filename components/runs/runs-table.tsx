@@ -168,6 +168,7 @@ function TitleCell({ row }: { row: RunRow }) {
         <span className="lg:hidden">{row.createdAt.slice(0, 10)} · </span>
         {row.createdBy}
       </span>
+      {row.analysis && <span className="block text-sm lg:hidden">{row.analysis.verdict}</span>}
     </>
   );
 }

@@ -1,7 +1,7 @@
 "use client";
 
 import { useRouter } from "next/navigation";
-import { useState } from "react";
+import { useState, type FormEvent } from "react";
 import { FileDrop } from "@/components/upload/file-drop";
 import { PendingFileList } from "@/components/upload/pending-file-list";
 import { UploadStatus } from "@/components/upload/upload-status";
@@ -15,7 +15,8 @@ export function AddArchives({ runId, first }: { runId: string; first: boolean })
   const uploads = useUploads();
   const busy = uploads.sending !== null;
 
-  async function send() {
+  async function send(event: FormEvent<HTMLFormElement>) {
+    event.preventDefault();
     setTold(null);
     const sent = await uploads.send(runId, files);
     if (!sent) return;
@@ -25,7 +26,7 @@ export function AddArchives({ runId, first }: { runId: string; first: boolean })
   }
 
   return (
-    <section className="space-y-3">
+    <form onSubmit={send} className="space-y-3">
       <h2>{first ? "Add an archive" : "Add archives"}</h2>
       <FileDrop onFiles={(added) => setFiles([...files, ...added.map((file) => ({ file, role: roleFromName(file.name), times_us: "" }))])} disabled={busy}>
         <p className="text-muted">{first ? "Shots of this run, or its calibration shots." : "More shots of the same sites, or calibration shots. They make a new version; the present one stays as it is."}</p>
@@ -38,10 +39,10 @@ export function AddArchives({ runId, first }: { runId: string; first: boolean })
         </p>
       )}
       {files.length > 0 && (
-        <button type="button" className="button button-primary" onClick={send} disabled={busy}>
+        <button type="submit" className="button button-primary" disabled={busy}>
           {busy ? "Sending…" : files.length === 1 ? "Send the file" : `Send ${files.length} files`}
         </button>
       )}
-    </section>
+    </form>
   );
 }

@@ -2,11 +2,11 @@
 
 import { useRouter } from "next/navigation";
 import { useState, type FormEvent } from "react";
+import { siteText } from "@/components/charts/site-text";
 import { ApiProblem, sendJson } from "@/components/data/fetch-json";
 import { FormField } from "@/components/forms/form-field";
 import { ProblemNotice } from "@/components/shell/problem-notice";
 import type { ProblemPlace } from "@/lib/problem";
-import { siteText } from "./trace-view";
 
 interface AnalysisFormProps {
   runId: string;

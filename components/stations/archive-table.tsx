@@ -16,6 +16,7 @@ export interface ArchiveRow {
 }
 
 const ROLES: Record<ArchiveRow["role"], string> = { shots: "shots", "calibration-dark": "calibration, dark", "calibration-bright": "calibration, bright" };
+const FORMATS: Record<string, string> = { "csv-shots": "CSV, a row a shot", "csv-counts": "CSV, a row a count", npy: "NPY", npz: "NPZ" };
 const STATES: Record<ArchiveRow["state"], string> = { waiting: "waiting", read: "read", refused: "refused" };
 
 /** The raw archives of a run, kept as they came, with their hashes. */
@@ -45,7 +46,7 @@ export function ArchiveTable({ archives }: { archives: ArchiveRow[] }) {
                   </a>
                 </td>
                 <td className="whitespace-nowrap">{ROLES[archive.role]}</td>
-                <td className="whitespace-nowrap">{archive.format ?? "–"}</td>
+                <td className="whitespace-nowrap">{archive.format ? (FORMATS[archive.format] ?? archive.format) : "–"}</td>
                 <td className="text-right whitespace-nowrap">{byteCount(archive.bytes)}</td>
                 <td title={archive.sha256}>{archive.sha256.slice(0, 12)}…</td>
                 <td className={archive.state === "refused" ? "text-error" : ""}>{STATES[archive.state]}</td>

@@ -5,13 +5,14 @@ import useSWR from "swr";
 import { colourLimit } from "@/components/charts/map-geometry";
 import { CorrelationMap } from "@/components/charts/correlation-map";
 import { MatrixChart } from "@/components/charts/matrix-chart";
+import { siteText } from "@/components/charts/site-text";
 import { TraceChart } from "@/components/charts/trace-chart";
 import { fetchJson } from "@/components/data/fetch-json";
 import { useUrlState } from "@/components/shell/use-url-state";
 import { plainNumber } from "@/lib/number-text";
 import { ExportLinks } from "./export-links";
 import { TimeSlider } from "./time-slider";
-import { siteText, traceLine, traceMap, traceName, type TracesAnswer } from "./trace-view";
+import { traceLine, traceMap, traceName, type TracesAnswer } from "./trace-view";
 
 interface CorrelationsStationProps {
   analysisId: string;
@@ -34,8 +35,9 @@ export function CorrelationsStation({ analysisId, siteNames, traces: own }: Corr
   const [rowText, setRow] = useUrlState("row", "");
   const [timeText, setTime] = useUrlState("time", String(Math.floor(own.times_us.length / 2)));
   const k = Math.max(0, Math.min(own.times_us.length - 1, Number.parseInt(timeText, 10) || 0));
-  const { data: shown = own, error } = useSWR<TracesAnswer>(
-    view === ownView ? null : `/api/v1/analyses/${analysisId}/traces?${view === "distance" ? "kind=distance" : `reference=${view}`}`,
+  const query = view === "distance" ? "kind=distance" : `reference=${view}`;
+  const { data: shown = own, error, isLoading } = useSWR<TracesAnswer>(
+    view === ownView ? null : `/api/v1/analyses/${analysisId}/traces?${query}`,
     fetchJson,
     { keepPreviousData: true },
   );
@@ -65,7 +67,7 @@ export function CorrelationsStation({ analysisId, siteNames, traces: own }: Corr
         {error && <p className="text-error" role="alert">{error instanceof Error ? error.message : "The map could not be read."}</p>}
       </div>
       <div className="grid grid-cols-1 gap-x-8 gap-y-7 lg:grid-cols-[3fr_2fr]">
-        <div className="min-w-0 space-y-7">
+        <div aria-busy={isLoading} className={`min-w-0 space-y-7 transition-opacity ${isLoading ? "opacity-50" : ""}`}>
           <CorrelationMap
             title="Connected correlators"
             caption="pick a row to see its trace"
@@ -75,15 +77,15 @@ export function CorrelationsStation({ analysisId, siteNames, traces: own }: Corr
             height={390}
             chosenRow={row}
             onPickRow={(picked) => setRow(String(picked))}
-            actions={<ExportLinks analysisId={analysisId} figure="map" data="correlators" />}
+            actions={<ExportLinks analysisId={analysisId} figure={view === ownView ? "map" : null} data="correlators" />}
           />
           <TraceChart
             title={`C against time, ${traceName(traces, trace, siteNames)}`}
-            caption="with its 95 % band"
+            caption={traces.low[trace].some((low) => low !== null) ? "with its 95 % band" : "without a band"}
             line={traceLine(traces, trace)}
             errors={traces.error[trace]}
             height={240}
-            actions={<ExportLinks analysisId={analysisId} figure="traces" data="traces" />}
+            actions={<ExportLinks analysisId={analysisId} figure={view === ownView ? "traces" : null} data="traces" query={view === ownView ? "" : query} />}
           />
         </div>
         <div className="min-w-0">
@@ -104,7 +106,7 @@ interface MatrixAtTimeProps {
 }
 
 function MatrixAtTime({ analysisId, siteNames, k, time_us, limit }: MatrixAtTimeProps) {
-  const { data, error } = useSWR<MatrixAnswer>(`/api/v1/analyses/${analysisId}/correlators?time_index=${k}`, fetchJson, { keepPreviousData: true });
+  const { data, error, isLoading } = useSWR<MatrixAnswer>(`/api/v1/analyses/${analysisId}/correlators?time_index=${k}`, fetchJson, { keepPreviousData: true });
   const sites = siteNames.length;
   const lookUp = useMemo(() => pairLookUp(data, sites), [data, sites]);
   const value = useCallback((i: number, j: number) => lookUp.value[i * sites + j], [lookUp, sites]);
@@ -118,7 +120,8 @@ function MatrixAtTime({ analysisId, siteNames, k, time_us, limit }: MatrixAtTime
       value={value}
       error={errorAt}
       limit={limit}
-      largest={452}
+      largest={440}
+      loading={isLoading}
     />
   );
 }

@@ -29,6 +29,7 @@ export function DetectionForm({ runId, sites, hasCalibration, latest }: Detectio
   const [method, setMethod] = useState<Method>(hasCalibration ? "calibration" : "mixture");
   const [busy, setBusy] = useState(false);
   const [refusal, setRefusal] = useState<{ detail: string; errors: ProblemPlace[] } | null>(null);
+  const atField = refusal?.errors.find((place) => place.where.startsWith("threshold"));
 
   async function save(event: FormEvent<HTMLFormElement>) {
     event.preventDefault();
@@ -66,10 +67,10 @@ export function DetectionForm({ runId, sites, hasCalibration, latest }: Detectio
         hint={`${method === "fixed" ? "" : "Optional. "}One for all sites, or ${sites} by commas. Bright means more than θ counts; 3.5 means four or more.`}
         required={method === "fixed"}
         disabled={busy}
-        error={refusal?.errors.find((place) => place.where.startsWith("threshold"))?.message}
+        error={atField && `${placeText(atField.where)}${atField.message}`}
       />
       <FormField label="Label" name="label" hint="optional" maxLength={120} disabled={busy} />
-      {refusal && <ProblemNotice title="Not saved" problem={refusal} />}
+      {refusal && !atField && <ProblemNotice title="Not saved" problem={refusal} />}
       <button type="submit" className="button button-primary" disabled={busy}>
         {busy ? "Saving…" : "Save detection"}
       </button>
@@ -92,6 +93,12 @@ function MethodChoice({ method, chosen, onChoose, disabled = false, children }: 
       {children}
     </label>
   );
+}
+
+/** `thresholds[1]` is the second value typed. */
+function placeText(where: string): string {
+  const index = /\[(\d+)\]/.exec(where);
+  return index ? `Value ${Number(index[1]) + 1} ` : "";
 }
 
 function thresholdFields(form: FormData): { threshold?: number | string; thresholds?: (number | string)[] } {

@@ -3,13 +3,13 @@
 import { useMemo } from "react";
 import useSWR from "swr";
 import { SiteHistogramChart } from "@/components/charts/site-histogram";
+import { siteText } from "@/components/charts/site-text";
 import type { SiteHistogram } from "@/components/charts/histogram-marks";
 import { fetchJson } from "@/components/data/fetch-json";
 import { useUrlState } from "@/components/shell/use-url-state";
 import { DetectionForm } from "./detection-form";
 import { DetectionTable } from "./detection-table";
 import type { DetectionAnswer, HistogramsAnswer } from "./detection-types";
-import { siteText } from "./trace-view";
 
 interface DetectionStationProps {
   runId: string;
@@ -20,6 +20,8 @@ interface DetectionStationProps {
   hasCalibration: boolean;
 }
 
+/** From here on the small multiples are smaller. */
+const MANY_SITES = 24;
 const MOST_FREQUENT_SHARE = 0.9995;
 
 /** Per-site histograms with thresholds and fitted components, the table of sites, and the way to the next detection. */
@@ -56,9 +58,9 @@ export function DetectionStation({ runId, siteNames, detections, mayCreate, hasC
         </div>
         {detection?.stale && <p className="notice notice-warning mb-3">The run has newer shots than this detection was made on. Save a new one.</p>}
         {error && <p role="alert" className="notice notice-error">{error instanceof Error ? error.message : "The histograms could not be read."}</p>}
-        <div className="grid grid-cols-2 gap-x-5 gap-y-2 sm:grid-cols-3 lg:grid-cols-4 2xl:grid-cols-6" aria-busy={!data}>
+        <div className={`grid gap-y-2 ${siteNames.length > MANY_SITES ? "grid-cols-3 gap-x-3 sm:grid-cols-4 lg:grid-cols-8 2xl:grid-cols-10" : "grid-cols-2 gap-x-5 sm:grid-cols-3 lg:grid-cols-4 2xl:grid-cols-6"}`} aria-busy={!data}>
           {histograms.map((histogram) => (
-            <SiteHistogramChart key={histogram.site} histogram={histogram} logarithmic={scale === "log"} lastCount={lastCount} height={124} />
+            <SiteHistogramChart key={histogram.site} histogram={histogram} logarithmic={scale === "log"} lastCount={lastCount} height={siteNames.length > MANY_SITES ? 84 : 118} />
           ))}
         </div>
         {detection && <DetectionTable detection={detection} siteNames={siteNames} />}

@@ -1,6 +1,8 @@
 import { plainNumber } from "@/lib/number-text";
 import type { DetectionAnswer } from "./detection-types";
 
+const SMALLEST_PADDED = 1e-5;
+
 /** Warnings that every site shares are said once, above the table. */
 function sharedWarnings(warnings: DetectionAnswer["warnings"]): string[] {
   const [first = [], ...others] = warnings;
@@ -10,6 +12,8 @@ function sharedWarnings(warnings: DetectionAnswer["warnings"]): string[] {
 /** Thresholds, error rates and fidelity of every site, in per cent where they are rates; warnings in words. */
 export function DetectionTable({ detection, siteNames }: { detection: DetectionAnswer; siteNames: string[] }) {
   const shared = sharedWarnings(detection.warnings);
+  const ownWarnings = siteNames.map((_, site) => (detection.warnings[site] ?? []).filter(({ code }) => !shared.includes(code)).map(({ message }) => message).join(" "));
+  const anyOwn = ownWarnings.some((text) => text !== "");
   return (
     <section className="mt-6">
       <h2>
@@ -31,7 +35,7 @@ export function DetectionTable({ detection, siteNames }: { detection: DetectionA
               <th scope="col" className="text-right" title="P(reads bright | dark), 95 % interval">ε<sub>d</sub> (%)</th>
               <th scope="col" className="text-right" title="P(reads dark | bright), 95 % interval">ε<sub>b</sub> (%)</th>
               <th scope="col" className="text-right whitespace-nowrap" title="1 − (ε_d + ε_b)/2">fidelity (%)</th>
-              <th scope="col" className="pl-6">to keep in mind</th>
+              {anyOwn && <th scope="col" className="pl-6">to keep in mind</th>}
             </tr>
           </thead>
           <tbody>
@@ -46,7 +50,7 @@ export function DetectionTable({ detection, siteNames }: { detection: DetectionA
                   <Rate value={detection.falseDark[site]} interval={detection.falseDarkInterval[site]} />
                 </td>
                 <td className="text-right">{percent(detection.fidelity[site], 4)}</td>
-                <td className="pl-6 text-sm text-warning">{detection.warnings[site]?.filter(({ code }) => !shared.includes(code)).map(({ message }) => message).join(" ")}</td>
+                {anyOwn && <td className="pl-6 text-sm text-warning">{ownWarnings[site]}</td>}
               </tr>
             ))}
           </tbody>
@@ -69,6 +73,8 @@ function Rate({ value, interval }: { value: number | null; interval: [number, nu
   );
 }
 
+/** Keeps its last zeros, so that figures stand under one another. */
 function percent(value: number | null, digits: number): string {
-  return value === null ? "–" : plainNumber(100 * value, digits);
+  if (value === null) return "–";
+  return value < SMALLEST_PADDED ? plainNumber(100 * value, digits) : (100 * value).toPrecision(digits);
 }

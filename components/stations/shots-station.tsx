@@ -28,16 +28,18 @@ interface ShotsStationProps {
   view: ShotsView | null;
   archives: ArchiveRow[];
   mayUpload: boolean;
+  /** Archives are being read just now. */
+  reading: boolean;
 }
 
 const REASONS: Record<string, string> = { missing: "a count was missing" };
 
 /** What was read: shots per time, what was set aside and why, brightness by site and time, and the archives behind it. */
-export function ShotsStation({ runId, notes, view, archives, mayUpload }: ShotsStationProps) {
+export function ShotsStation({ runId, notes, view, archives, mayUpload, reading }: ShotsStationProps) {
   return (
     <div className="grid grid-cols-1 gap-x-10 gap-y-8 xl:grid-cols-[1fr_24rem]">
       <div className="min-w-0 space-y-8">
-        {view ? <Brightness view={view} /> : <NothingYet mayUpload={mayUpload} />}
+        {view ? <Brightness view={view} /> : <p className="notice max-w-[60ch]">{nothingYet(archives, mayUpload, reading)}</p>}
         <ArchiveTable archives={archives} />
       </div>
       <aside className="min-w-0 space-y-7">
@@ -78,12 +80,12 @@ function Brightness({ view }: { view: ShotsView }) {
   );
 }
 
-function NothingYet({ mayUpload }: { mayUpload: boolean }) {
-  return (
-    <p className="notice max-w-[60ch]">
-      No shots have been read yet. {mayUpload ? "Add the first archive; what it holds is shown here as soon as it is read." : "A contributor adds the first archive."}
-    </p>
-  );
+function nothingYet(archives: ArchiveRow[], mayUpload: boolean, reading: boolean): string {
+  if (reading) return "The archive is being read. What it holds is shown here by itself as soon as that is done.";
+  if (archives.some(({ state }) => state === "refused")) {
+    return `Nothing of this run could be read; the place is named below.${mayUpload ? " Mend the file and add it here: the refused one stays as it came." : ""}`;
+  }
+  return `No shots have been read yet. ${mayUpload ? "Add the first archive; what it holds is shown here as soon as it is read." : "A contributor adds the first archive."}`;
 }
 
 function KeptAndSetAside({ view }: { view: ShotsView }) {
@@ -101,7 +103,7 @@ function KeptAndSetAside({ view }: { view: ShotsView }) {
         <dd>{fewest === most ? groupedCount(most) : `${groupedCount(fewest)} … ${groupedCount(most)}`}</dd>
         <dt>Evolution times</dt>
         <dd>
-          {view.times_us.length}, {plainNumber(view.times_us[0], 6)} … {plainNumber(view.times_us[view.times_us.length - 1], 6)} µs
+          {view.times_us.length} <span className="text-muted">from</span> {plainNumber(view.times_us[0], 6)} <span className="text-muted">to</span> {plainNumber(view.times_us[view.times_us.length - 1], 6)} µs
         </dd>
         <dt>Sites</dt>
         <dd>{view.siteNames.length}</dd>

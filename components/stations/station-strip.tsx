@@ -1,7 +1,7 @@
 "use client";
 
 import Link from "next/link";
-import { usePathname } from "next/navigation";
+import { usePathname, useSearchParams } from "next/navigation";
 
 export interface Station {
   segment: "shots" | "detection" | "correlations" | "front";
@@ -18,12 +18,14 @@ const STATE_WORDS: Record<Station["state"], string> = { current: "up to date", o
 /** The four stations of a run on one strip, each with its key figure and whether it is up to date. */
 export function StationStrip({ runId, stations }: { runId: string; stations: Station[] }) {
   const pathname = usePathname();
+  const analysis = useSearchParams().get("analysis");
   return (
     <nav aria-label="Stations of the run" className="mt-4 mb-6 border-y border-rule">
       <ol className="grid grid-cols-2 sm:grid-cols-4">
         {stations.map((station, index) => {
-          const href = `/runs/${runId}/${station.segment}`;
-          const here = pathname === href;
+          const path = `/runs/${runId}/${station.segment}`;
+          const href = analysis ? `${path}?analysis=${encodeURIComponent(analysis)}` : path;
+          const here = pathname === path;
           return (
             <li key={station.segment} className={`border-hairline ${index % 2 === 1 ? "border-l" : ""} ${index >= 2 ? "border-t sm:border-t-0" : ""} ${index === 2 ? "sm:border-l" : ""}`}>
               <Link
@@ -36,7 +38,7 @@ export function StationStrip({ runId, stations }: { runId: string; stations: Sta
                   <span>
                     <span className="figures">{index + 1}</span> {station.name}
                   </span>
-                  <span className={station.state === "outdated" ? "text-warning" : ""}>
+                  <span title={STATE_WORDS[station.state]} className={station.state === "outdated" ? "text-warning" : ""}>
                     <StateMark state={station.state} />
                     <span className="sr-only">{STATE_WORDS[station.state]}</span>
                   </span>
@@ -55,7 +57,6 @@ export function StationStrip({ runId, stations }: { runId: string; stations: Sta
 function StateMark({ state }: { state: Station["state"] }) {
   return (
     <svg viewBox="0 0 10 10" width="9" height="9" aria-hidden="true" className="inline-block">
-      <title>{STATE_WORDS[state]}</title>
       <circle cx="5" cy="5" r="4" fill={state === "current" ? "currentColor" : "none"} stroke="currentColor" strokeWidth="1.4" strokeDasharray={state === "missing" ? "2 2" : undefined} />
     </svg>
   );

@@ -1,6 +1,7 @@
 import type { MapCrossing, FrontCurve as MapCurve } from "@/components/charts/front-overlay";
 import type { FrontFitCurve } from "@/components/charts/front-chart-marks";
 import type { MapData } from "@/components/charts/map-geometry";
+import { siteText } from "@/components/charts/site-text";
 import type { TraceLine } from "@/components/charts/trace-chart-marks";
 import type { FrontCurve, FrontPoint, FrontResult } from "@/lib/science/front/front-result";
 import { plainNumber } from "@/lib/number-text";
@@ -85,11 +86,6 @@ export function traceName(traces: TracesAnswer, trace: number, siteNames: string
   if (traces.kind === "distance" || traces.referenceSite === null) return traces.labels[trace];
   const site = trace < traces.referenceSite ? trace : trace + 1;
   return siteText(siteNames[site] ?? String(site));
-}
-
-/** Returns a site's name as it reads in a sentence: many archives call their columns "site_3" already. */
-export function siteText(name: string): string {
-  return /^site/i.test(name) ? name : `site ${name}`;
 }
 
 /** Returns one trace as a line, with its crossing when the front has one. */

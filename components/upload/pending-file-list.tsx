@@ -48,7 +48,7 @@ export function PendingFileList({ files, onChange, disabled }: PendingFileListPr
           {pending.role === "shots" && /\.npy(\.gz)?$/i.test(pending.file.name) && (
             <label className="mt-1 block">
               <span className="label">Evolution times in µs, separated by commas (an NPY file holds none)</span>
-              <input className="field figures" value={pending.times_us} disabled={disabled} onChange={(event) => change(index, { times_us: event.target.value })} />
+              <input className="field figures" required value={pending.times_us} disabled={disabled} onChange={(event) => change(index, { times_us: event.target.value })} />
             </label>
           )}
         </li>

@@ -26,10 +26,11 @@ export const DESK: View = { width: 1440, height: 900, theme: "paper" };
 export const PHONE: View = { width: 390, height: 844, theme: "paper" };
 
 /** Opens a page of the given size and theme whose faults are kept. */
-export async function openPage(browser: Browser, view: View = DESK): Promise<WatchedPage> {
+export async function openPage(browser: Browser, view: View = DESK, { touch = false } = {}): Promise<WatchedPage> {
   const context = await browser.newContext({
     viewport: { width: view.width, height: view.height },
     colorScheme: view.theme === "night" ? "dark" : "light",
+    hasTouch: touch,
     baseURL: testUrl(),
   });
   const page = await context.newPage();

@@ -1,6 +1,6 @@
 import type { Browser } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
-import { launchBrowser, openPage, signInAs, type WatchedPage } from "./browser";
+import { launchBrowser, openPage, PHONE, signInAs, type WatchedPage } from "./browser";
 
 let browser: Browser;
 let watched: WatchedPage;
@@ -30,6 +30,39 @@ describe("the plots of a run", () => {
     await page.keyboard.press("ArrowRight");
     const second = await page.getByText(/t = .* µs: C = /).first().textContent();
     expect(second).not.toBe(first);
+  });
+
+  it("lift the read-out by Escape, and stay where a finger pointed", async () => {
+    const { page, context } = await openPage(browser, PHONE, { touch: true });
+    await signInAs(page, "reader");
+    await page.goto(`${run}/front`, { waitUntil: "networkidle" });
+    const map = page.getByRole("img", { name: /^Correlations and front/ });
+    const box = await map.boundingBox();
+    if (!box) throw new Error("the map is not drawn");
+    await page.touchscreen.tap(box.x + box.width / 2, box.y + 60);
+    await page.waitForURL(/trace=/);
+    await page.getByText(/t = .* µs: C = /).first().waitFor();
+    await map.focus();
+    await page.keyboard.press("Escape");
+    await page.getByText(/t = .* µs: C = /).first().waitFor({ state: "detached" });
+    await context.close();
+  });
+
+  it("keep the chosen analysis from station to station", async () => {
+    const { page } = watched;
+    await page.goto(`${run}/front?analysis=1`, { waitUntil: "networkidle" });
+    await page.getByRole("link", { name: /Correlations/ }).click();
+    await page.waitForURL(/correlations\?analysis=1/);
+  });
+
+  it("offer no file where none shows the same picture", async () => {
+    const { page } = watched;
+    await page.goto(`${run}/correlations?reference=3`, { waitUntil: "networkidle" });
+    expect(await page.getByRole("link", { name: "SVG" }).count()).toBe(0);
+    const csv = await page.request.get((await page.getByRole("link", { name: "CSV" }).nth(1).getAttribute("href")) ?? "");
+    expect(await csv.text()).toContain("site 0");
+    await page.goto(`${run}/correlations`, { waitUntil: "networkidle" });
+    expect(await page.getByRole("link", { name: "SVG" }).count()).toBe(2);
   });
 
   it("have a table twin with every value", async () => {

@@ -32,6 +32,15 @@ describe("a new run", () => {
     expect(faults).toEqual([]);
   });
 
+  it("asks for the times an NPY file does not hold before anything is sent", async () => {
+    const { page } = watched;
+    await page.goto("/runs/new");
+    await page.locator('input[type="file"]').setInputFiles({ name: "night.npy", mimeType: "application/octet-stream", buffer: Buffer.from("NUMPY") });
+    await page.getByRole("button", { name: "Create the run and read it" }).click();
+    expect(await page.getByLabel(/Evolution times/).evaluate((field: HTMLInputElement) => field.validity.valueMissing)).toBe(true);
+    expect(new URL(page.url()).pathname).toBe("/runs/new");
+  });
+
   it("is refused with the place named when the archive is broken, and nothing else is lost", async () => {
     const { page } = watched;
     await page.goto("/runs/new");

@@ -1,4 +1,4 @@
-import type { Browser } from "playwright-core";
+import type { Browser, Page } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { accessibilityFaults, DESK, launchBrowser, layoutShift, openPage, PHONE, signInAs, type WatchedPage } from "./browser";
 
@@ -17,6 +17,10 @@ async function demoRun({ page }: WatchedPage): Promise<string> {
   const href = await link.getAttribute("href");
   if (!href) throw new Error("the demo run has no link");
   return href;
+}
+
+function sidewaysScroll(page: Page): Promise<number> {
+  return page.evaluate(() => document.documentElement.scrollWidth - document.documentElement.clientWidth);
 }
 
 describe("a newcomer", () => {
@@ -63,6 +67,22 @@ describe.each([
   });
   afterAll(() => watched.context.close());
 
+  it.each([
+    { name: "signed out, the sign-in page", path: "/sign-in", signedIn: false },
+    { name: "signed out, the set-up page", path: "/setup?key=unknown", signedIn: false },
+    { name: "a run that is not there", path: "/runs/0123456789abcdef01234567/front", signedIn: true },
+    { name: "an address that is not there", path: "/nowhere", signedIn: true },
+  ])("$name: no violation, no layout shift, no sideways scroll", async ({ path, signedIn }) => {
+    const stranger = signedIn ? null : await openPage(browser, view);
+    const { page } = stranger ?? watched;
+    await page.goto(path, { waitUntil: "networkidle" });
+    expect(await layoutShift(page)).toBeLessThan(0.02);
+    expect(await accessibilityFaults(page)).toEqual([]);
+    expect(await sidewaysScroll(page)).toBeLessThanOrEqual(0);
+    if (stranger) expect(stranger.faults).toEqual([]);
+    await stranger?.context.close();
+  });
+
   it.each(["runs", "new run", "account", ...STATIONS])("%s: no failed request, no violation, no layout shift, no sideways scroll", async (name) => {
     const { page, faults } = watched;
     const path = { runs: "/runs", "new run": "/runs/new", account: "/account" }[name] ?? `${run}/${name}`;
@@ -70,7 +90,7 @@ describe.each([
     await page.goto(path, { waitUntil: "networkidle" });
     expect(await layoutShift(page)).toBeLessThan(0.02);
     expect(await accessibilityFaults(page)).toEqual([]);
-    expect(await page.evaluate(() => document.documentElement.scrollWidth - document.documentElement.clientWidth)).toBeLessThanOrEqual(0);
+    expect(await sidewaysScroll(page)).toBeLessThanOrEqual(0);
     expect(faults).toEqual([]);
   });
 });

@@ -6,10 +6,14 @@ const MINUS = "\u2212";
  */
 export function decimalsFor(error: number): number {
   if (!(error > 0) || !Number.isFinite(error)) return 2;
+  return Math.min(20, Math.max(0, -lastDigitOf(error)));
+}
+
+/** Returns the power of ten of the last digit that shows a positive error with one significant digit, two when it begins with 1. */
+export function lastDigitOf(error: number): number {
   const rounded = Number(error.toPrecision(2));
   const exponent = Math.floor(Math.log10(rounded) + 1e-12);
-  const digits = rounded / 10 ** exponent < 2 ? 1 : 0;
-  return Math.min(20, Math.max(0, digits - exponent));
+  return Math.round(rounded / 10 ** (exponent - 1)) < 20 ? exponent - 1 : exponent;
 }
 
 /** Returns a number with the given decimals and a typeset minus sign. */

@@ -1,5 +1,6 @@
 import { describe, expect, it } from "vitest";
-import { siteText, traceMap, traceName, type TracesAnswer } from "@/components/stations/trace-view";
+import { siteText } from "@/components/charts/site-text";
+import { traceMap, traceName, type TracesAnswer } from "@/components/stations/trace-view";
 
 const traces: TracesAnswer = {
   kind: "reference",

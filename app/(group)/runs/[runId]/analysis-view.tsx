@@ -21,7 +21,7 @@ interface AnalysisViewProps {
 
 /** A station that needs a finished analysis: chooses one, or says what to do until there is one. */
 export async function AnalysisView({ data, wish, children }: AnalysisViewProps) {
-  const { actor, run, detections, analyses } = data;
+  const { actor, run, detections, analyses, active } = data;
   if (run.version === 0) return <NotYet runId={run.id} missing="shots" />;
   if (detections.length === 0) return <NotYet runId={run.id} missing="detection" />;
   const finished = analyses.filter(({ state }) => state === "done");
@@ -31,6 +31,9 @@ export async function AnalysisView({ data, wish, children }: AnalysisViewProps) 
   const chosen = finished.find(({ number }) => String(number) === wish) ?? finished[0];
   const row = chosen && (await findFinishedAnalysis(actor, chosen.id));
   if (!chosen || !row || isProblem(row)) {
+    if (active.some(({ kind }) => kind === "analysis")) {
+      return <p className="notice max-w-[70ch]">The first analysis is under way. Map and front appear here by themselves when it is done.</p>;
+    }
     return (
       <div className="space-y-5">
         {failure}

@@ -7,12 +7,11 @@ import { stationsOf } from "./stations";
 
 export default async function RunLayout({ children, params }: { children: ReactNode; params: Promise<{ runId: string }> }) {
   const data = await runPageData((await params).runId);
-  const active = data.jobs.filter(({ state }) => state === "queued" || state === "running");
   return (
     <>
       <RunHead
         run={data.run}
-        jobs={active.map(({ id, kind }) => ({ id, kind }))}
+        jobs={data.active.map(({ id, kind }) => ({ id, kind }))}
         mayCancel={may(data.actor, "job.cancel")}
         mayDelete={may(data.actor, "run.delete")}
         dependents={{ archives: data.run.archives.length, detections: data.detections.length, analyses: data.analyses.length }}

@@ -19,7 +19,8 @@ export interface RunPageData {
   /** Newest first. */
   detections: ShownDetection[];
   analyses: ShownAnalysis[];
-  jobs: ShownJob[];
+  /** Jobs of the run that wait or run. */
+  active: ShownJob[];
 }
 
 const ID = /^[0-9a-f]{24}$/;
@@ -28,10 +29,15 @@ const ID = /^[0-9a-f]{24}$/;
 export const runPageData = cache(async (runId: string): Promise<RunPageData> => {
   const actor = await requireActor();
   if (!ID.test(runId)) notFound();
-  const run = found(await getRun(actor, runId));
-  const [detections, analyses, jobs] = await Promise.all([listDetections(actor, runId, { limit: 200 }), listAnalyses(actor, runId), listRunJobs(actor, runId)]);
-  return { actor, run, detections: found(detections).items, analyses: found(analyses), jobs: found(jobs) };
+  // Jobs first: one that ends in between is still followed, and the page read anew at its end; the other way round, it would show what came before.
+  const jobs = await listRunJobs(actor, runId);
+  const [run, detections, analyses] = await Promise.all([getRun(actor, runId), listDetections(actor, runId, { limit: 200 }), listAnalyses(actor, runId)]);
+  return { actor, run: found(run), detections: found(detections).items, analyses: found(analyses), active: found(jobs).filter(isUnderWay) };
 });
+
+function isUnderWay({ state }: ShownJob): boolean {
+  return state === "queued" || state === "running";
+}
 
 function found<T>(answer: T | Problem): T {
   if (isProblem(answer)) notFound();
