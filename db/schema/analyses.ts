@@ -11,7 +11,10 @@ export interface AnalysisParameters {
   detectionId: string;
   readoutCorrection: boolean;
   estimator: "plug-in" | "unbiased";
-  bootstrap: { replicates: number; seed: number; interval: "percentile" | "bca" };
+  /** How counts become spins: by thresholds, or weighted by the fitted count distributions without any. */
+  reading: "threshold" | "threshold-free";
+  /** `blockLength`: shots in a row that are resampled together, against drift; 1 resamples single shots. */
+  bootstrap: { replicates: number; seed: number; interval: "percentile" | "bca"; blockLength: number };
   traces: { kind: "reference"; site: number } | { kind: "distance"; bulk?: number[] };
   front: {
     rule: "fraction-of-max" | "fixed-level" | "noise-multiple";
@@ -21,6 +24,9 @@ export interface AnalysisParameters {
     minSignal: number;
     absolute: boolean;
     throughOrigin: boolean;
+    powerLawIn: "log-time" | "time";
+    /** Weights of the fits: each point's own error, or the joint covariance of all crossing times (generalised least squares). */
+    covariance: "diagonal";
   };
 }
 

@@ -20,6 +20,19 @@ export interface DetectionSite {
   warnings: { code: string; message: string }[];
 }
 
+/** What the counts of a bright and of a dark site are taken to follow. */
+export type DetectionModelName = "poisson" | "leakage" | "negative-binomial";
+
+/** The model behind a detection's error rates, and why it was taken. */
+export interface DetectionModel {
+  name: DetectionModelName;
+  chosen: "bic" | "by-hand";
+  /** BIC summed over the fitted sites, of each model that was tried; the least is best. */
+  bic: { name: DetectionModelName; value: number }[];
+  /** One plain sentence. */
+  reason: string;
+}
+
 /** A saved set of thresholds; never edited, only superseded by a higher number. */
 export const detections = mysqlTable(
   "detections",
@@ -32,6 +45,8 @@ export const detections = mysqlTable(
     method: mysqlEnum(["fixed", "mixture", "calibration"]).notNull(),
     label: varchar({ length: 120 }),
     sites: jsonText<DetectionSite[]>()().notNull(),
+    /** Null when no mixture was fitted. */
+    model: jsonText<DetectionModel>()(),
     createdBy: id().notNull().references(() => users.id),
     createdAt: moment().notNull(),
   },

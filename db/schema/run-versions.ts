@@ -10,6 +10,14 @@ export interface VersionArchive {
   format: string;
 }
 
+/** How a site's brightness differs between the earlier and the later half of the shots of each time, over all times. */
+export interface SiteDrift {
+  /** (later − earlier) / mean of both. */
+  change: number;
+  /** The difference in units of its standard error. */
+  significance: number;
+}
+
 /** What one reading of a run's archives gave; never changed afterwards. */
 export const runVersions = mysqlTable(
   "run_versions",
@@ -34,6 +42,8 @@ export const runVersions = mysqlTable(
     calibrationBrightShots: int().notNull(),
     /** `[k][site]`, mean count of the kept shots. */
     brightness: jsonText<number[][]>()().notNull(),
+    /** `[site]`; null in versions read before drift was looked at. */
+    drift: jsonText<SiteDrift[]>()(),
     warnings: jsonText<{ code: string; message: string }[]>()().notNull(),
     createdAt: moment().notNull(),
   },

@@ -9,6 +9,7 @@ const Bootstrap = z.strictObject({
   /** The same default for everybody: a result is the same bytes again without writing anything down. */
   seed: z.number().int().min(0).max(Number.MAX_SAFE_INTEGER).default(1),
   interval: z.enum(["percentile", "bca"]).default("percentile"),
+  blockLength: z.literal(1).default(1),
 });
 
 const Traces = z.discriminatedUnion("kind", [
@@ -25,6 +26,8 @@ const Front = z
     minSignal: z.number().min(0).max(1000).default(DEFAULT_FRONT_RULE.minSignal),
     absolute: z.boolean().default(DEFAULT_FRONT_RULE.absolute),
     throughOrigin: z.boolean().default(false),
+    powerLawIn: z.enum(["log-time", "time"]).default("log-time"),
+    covariance: z.literal("diagonal").default("diagonal"),
   })
   .refine((front) => front.rule === "noise-multiple" || front.level < 1, { path: ["level"], message: "must be below 1 for this rule" });
 
@@ -33,6 +36,7 @@ export const CreateAnalysisInput = z.strictObject({
   detectionId: Id,
   readoutCorrection: z.boolean().default(false),
   estimator: z.enum(["plug-in", "unbiased"]).default("plug-in"),
+  reading: z.literal("threshold").default("threshold"),
   bootstrap: Bootstrap.prefault({}),
   traces: Traces.prefault({ kind: "reference" }),
   front: Front.prefault({}),

@@ -116,7 +116,7 @@ async function analyseTimes({ analysis, version, sites }: Inputs, plan: TracePla
 }
 
 function runFront(traces: TraceSet, { front }: AnalysisParameters, { pool, signal }: JobContext): Promise<FrontAnalysis> {
-  const { throughOrigin, ...rule } = front;
-  const message: FrontMessage = { traces, rule, options: { throughOrigin, powerLawIn: "log-time" } };
+  const { throughOrigin, powerLawIn, ...rule } = front;
+  const message: FrontMessage = { traces, rule, options: { throughOrigin, powerLawIn } };
   return pool.run(message, { name: "frontInThread", signal }) as Promise<FrontAnalysis>;
 }

@@ -37,6 +37,7 @@ export async function createDetection(actor: Actor, runId: string, input: Create
       method: input.method,
       label: input.label || null,
       sites,
+      model: null,
       createdBy: actor.userId,
       createdAt: new Date(),
     };

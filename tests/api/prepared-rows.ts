@@ -67,9 +67,10 @@ function preparedAnalysis(detectionId: string) {
       detectionId,
       readoutCorrection: false,
       estimator: "plug-in" as const,
-      bootstrap: { replicates: 10, seed: 1, interval: "percentile" as const },
+      reading: "threshold" as const,
+      bootstrap: { replicates: 10, seed: 1, interval: "percentile" as const, blockLength: 1 },
       traces: { kind: "reference" as const, site: 0 },
-      front: { rule: "fraction-of-max" as const, level: 0.1, method: "isotonic" as const, hold: 2, minSignal: 5, absolute: false, throughOrigin: false },
+      front: { rule: "fraction-of-max" as const, level: 0.1, method: "isotonic" as const, hold: 2, minSignal: 5, absolute: false, throughOrigin: false, powerLawIn: "log-time" as const, covariance: "diagonal" as const },
     },
     provenance: { runVersion: 1, archives: [], brightIs: "up" as const, positions: POSITIONS, detectionNumber: 1, programVersion: "0" },
   };
