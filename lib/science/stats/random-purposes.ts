@@ -11,6 +11,10 @@ export const RANDOM_PURPOSES = {
   simulation: 3,
   /** What completes a bootstrap replicate's byte draws to exactly M shots; index is the time k. */
   bootstrapRepairs: 4,
+  /** Simulated repeats of the nearest-neighbour model; index is the time k, replicate the repeat. */
+  nullFront: 6,
+  /** Simulated repeats of an analysis; index is the time k, replicate the repeat. */
+  selfTest: 7,
 } as const;
 
 export type RandomPurpose = (typeof RANDOM_PURPOSES)[keyof typeof RANDOM_PURPOSES];
