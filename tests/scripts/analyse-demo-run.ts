@@ -100,6 +100,7 @@ export function analyseDemo(run: DemoCounts, corrected: boolean): AnalysedDemo {
       replicates: REPLICATES,
       seed: SEED,
       interval: "percentile",
+      pairErrors: "law",
     }),
   );
   const traces = collectTraces(plan, run.times_us, results, REPLICATES);

@@ -1,6 +1,5 @@
 import {
   connectedCorrelators,
-  correlatorScale,
   countUps,
   hasFewFlips,
   jointOutcomes,
@@ -8,19 +7,13 @@ import {
   type CorrelatorEstimator,
   type UpCounts,
 } from "@/lib/science/correlators/connected-correlators";
-import { pairAcceleration, sumAcceleration } from "@/lib/science/correlators/jackknife-acceleration";
-import {
-  countReplicates,
-  prepareJointBootstrap,
-  siteRow,
-  type CountedPair,
-  type JointBootstrap,
-} from "@/lib/science/correlators/joint-bootstrap";
+import { jointReplicates } from "@/lib/science/correlators/joint-error-bars";
+import { lawOfMeans, lawOfPairs } from "@/lib/science/correlators/law-error-bars";
 import type { PackedSpins } from "@/lib/science/correlators/packed-spins";
 import { listPairs, pairCount } from "@/lib/science/correlators/pairs";
 import type { ReadoutCorrection } from "@/lib/science/correlators/readout-correction";
-import { errorBarOf, type IntervalKind } from "@/lib/science/correlators/error-bars";
-import type { TracePlan } from "@/lib/science/correlators/trace-plan";
+import type { IntervalKind } from "@/lib/science/correlators/error-bars";
+import { pairsOfTrace, type TracePlan } from "@/lib/science/correlators/trace-plan";
 
 /** Everything the correlators of one evolution time depend on; can be sent to a thread as it is. */
 export interface TimeTask {
@@ -33,6 +26,11 @@ export interface TimeTask {
   replicates: number;
   seed: number;
   interval: IntervalKind;
+  /**
+   * `law`: errors and intervals of single pairs and of means from their bootstrap law in closed form where it holds, replicates for
+   * what is judged jointly. `replicates`: everything from joint replicates, the plain bootstrap.
+   */
+  pairErrors: "law" | "replicates";
 }
 
 /** Values NaN where they are undefined: all errors and intervals with fewer than two shots or replicates. */
@@ -62,21 +60,6 @@ export interface TimeResult {
   traceReplicates: Float64Array;
 }
 
-/** A pair's part in a trace. */
-interface TraceShare {
-  trace: number;
-  share: number;
-}
-
-/** One evolution time while it is being analysed. */
-interface Work {
-  task: TimeTask;
-  run: JointBootstrap;
-  counts: UpCounts;
-  result: TimeResult;
-  sharesOfPair: Map<number, TraceShare[]>;
-}
-
 /**
  * Returns means, all connected correlators and traces of one evolution time with their joint bootstrap: whole shots are
  * resampled with replacement, and all sites, pairs and traces of a replicate share the same shots. The result depends
@@ -86,7 +69,6 @@ interface Work {
 export function analyseTime(task: TimeTask): TimeResult {
   const counts = countUps(task.spins);
   const result = valuesWithoutErrors(task, counts);
-  const sharesOfPair = tracesOfPairs(task.plan);
   addTraceValues(task, result);
   if (task.replicates === 0) return result;
   if (task.spins.shots < 2) {
@@ -95,12 +77,12 @@ export function analyseTime(task: TimeTask): TimeResult {
     });
     return result;
   }
-  const traces = task.plan.distances.length;
-  const run = prepareJointBootstrap(task.spins, task.readout, task.replicates, task.seed, task.timeIndex, traces);
-  const work = { task, run, counts, result, sharesOfPair };
-  countReplicates(run, (pairs) => pairs.forEach((pair) => analysePair(work, pair)));
-  analyseMeans(work);
-  analyseTraces(work);
+  const needed = new Uint8Array(pairCount(task.spins.sites)).fill(1);
+  if (task.pairErrors === "law") {
+    lawOfMeans(task, counts, result);
+    lawOfPairs(task, counts, result, needed);
+  }
+  jointReplicates(task, counts, result, needed);
   return result;
 }
 
@@ -140,80 +122,9 @@ function anyOfTrace(plan: TracePlan, flags: Uint8Array): Uint8Array {
   return Uint8Array.from(plan.distances, (_, q) => (pairsOfTrace(plan, q).some((pair) => flags[pair] === 1) ? 1 : 0));
 }
 
-function pairsOfTrace(plan: TracePlan, q: number): Uint32Array {
-  return plan.pairs.subarray(plan.offsets[q], plan.offsets[q + 1]);
-}
-
-function tracesOfPairs(plan: TracePlan): Map<number, TraceShare[]> {
-  const sharesOfPair = new Map<number, TraceShare[]>();
-  plan.distances.forEach((_, trace) => {
-    const pairs = pairsOfTrace(plan, trace);
-    for (const pair of pairs) {
-      const shares = sharesOfPair.get(pair) ?? [];
-      shares.push({ trace, share: 1 / pairs.length });
-      sharesOfPair.set(pair, shares);
-    }
-  });
-  return sharesOfPair;
-}
-
 function addTraceValues({ plan }: TimeTask, result: TimeResult): void {
   plan.distances.forEach((_, q) => {
     const pairs = pairsOfTrace(plan, q);
     for (const pair of pairs) result.traceValue[q] += (1 / pairs.length) * result.value[pair];
   });
-}
-
-function analysePair({ task, run, counts, result, sharesOfPair }: Work, { i, j, pair, bothUp }: CountedPair): void {
-  const { kernel, layout } = run;
-  const { shots, replicates, values, valueBytes, factors } = layout;
-  const scale = correlatorScale(shots, task.estimator);
-  const factorI = factors + i * valueBytes;
-  const factorJ = factors + j * valueBytes;
-  kernel.correlate(bothUp, siteRow(layout, i), siteRow(layout, j), factorI, factorJ, shots, scale, replicates, values);
-  const acceleration = task.interval === "bca" ? pairAcceleration(jointOutcomes(counts, i, j, pair)) : null;
-  const bar = errorBarOf(kernel, layout, values, result.value[pair], acceleration);
-  result.error[pair] = bar.error;
-  result.low[pair] = bar.low;
-  result.high[pair] = bar.high;
-  for (const { trace, share } of sharesOfPair.get(pair) ?? []) {
-    kernel.addShare(values, share, replicates, layout.traces + trace * valueBytes);
-  }
-}
-
-function analyseMeans({ task, run, result }: Work): void {
-  const { kernel, layout } = run;
-  const { shots, replicates, values, valueBytes } = layout;
-  for (let i = 0; i < task.spins.sites; i++) {
-    const factor = layout.factors + i * valueBytes;
-    const offset = layout.offsets + i * valueBytes;
-    kernel.average(siteRow(layout, i), factor, offset, shots, replicates, values);
-    result.meanError[i] = replicates < 2 ? Number.NaN : kernel.spread(values, replicates);
-  }
-}
-
-function analyseTraces(work: Work): void {
-  const { task, run, result } = work;
-  const { kernel, layout } = run;
-  task.plan.distances.forEach((_, q) => {
-    const row = layout.traces + q * layout.valueBytes;
-    const acceleration = task.interval === "bca" ? traceAcceleration(work, q) : null;
-    const bar = errorBarOf(kernel, layout, row, result.traceValue[q], acceleration);
-    result.traceError[q] = bar.error;
-    result.traceLow[q] = bar.low;
-    result.traceHigh[q] = bar.high;
-    const replicates = new Float64Array(kernel.memory.buffer, row, task.replicates);
-    result.traceReplicates.set(replicates, q * task.replicates);
-  });
-}
-
-function traceAcceleration({ task, counts }: Work, q: number): number {
-  const pairs = pairsOfTrace(task.plan, q);
-  const sitesOfAll = listPairs(task.spins.sites);
-  const sites = Array.from(pairs).flatMap((pair) => [sitesOfAll[2 * pair], sitesOfAll[2 * pair + 1]]);
-  const inverse = task.readout?.inverseFactor;
-  const weights = Float64Array.from(pairs, (_, p) =>
-    inverse === undefined ? 1 : inverse[sites[2 * p]] * inverse[sites[2 * p + 1]],
-  );
-  return sumAcceleration(task.spins, meanSpins(counts, null), sites, weights);
 }

@@ -16,13 +16,6 @@ const FILL_BYTES = 3 * 256 * 4;
 /** A tile's counts and lists stay below this each, so that 256 sites or many replicates fit into memory. */
 const TILE_BYTES = 24 * 2 ** 20;
 
-/** Two groups of four sites; `own` marks the one pair of groups that also counts the second group's own sites. */
-export interface GroupPair {
-  a: number;
-  b: number;
-  own: boolean;
-}
-
 /** Sizes, and where everything lies in the kernel's memory (byte offsets). */
 export interface BootstrapLayout {
   shots: number;
@@ -60,21 +53,14 @@ export interface BootstrapLayout {
   bytes: number;
 }
 
-/** Returns the group pairs, those that count a group's own sites first. Needs at least three groups. */
-export function listGroupPairs(groups: number): GroupPair[] {
-  const pairs: GroupPair[] = [];
-  for (let b = 0; b < groups; b++) pairs.push({ a: (b + 1) % groups, b, own: true });
-  for (let a = 0; a < groups; a++) {
-    for (let b = a + 2; b < groups; b++) {
-      if (!(a === 0 && b === groups - 1)) pairs.push({ a, b, own: false });
-    }
-  }
-  return pairs;
+/** Returns how many groups of four the sites make; at least two, so that there is a pair of them. */
+export function groupCount(sites: number): number {
+  return Math.max(2, Math.ceil(sites / GROUP_SITES));
 }
 
-/** Returns the layout for one evolution time; `traces` is the number of traces. */
-export function layOutBootstrap(shots: number, sites: number, replicates: number, traces: number): BootstrapLayout {
-  const groups = Math.max(3, Math.ceil(sites / GROUP_SITES));
+/** Returns the layout for one evolution time with so many group pairs and traces. */
+export function layOutBootstrap(shots: number, sites: number, replicates: number, groupPairs: number, traces: number): BootstrapLayout {
+  const groups = groupCount(sites);
   const blocks = Math.ceil(replicates / BLOCK_REPLICATES);
   const padded = blocks * BLOCK_REPLICATES;
   const rowBytes = padded * 4;
@@ -82,7 +68,7 @@ export function layOutBootstrap(shots: number, sites: number, replicates: number
   const chunks = cutIntoChunks(shots);
   const listBytes = LIST_HEADER_BYTES + FILL_BYTES + 4 * Math.min(shots, CHUNK_SHOTS);
   const largestTile = Math.floor(TILE_BYTES / Math.max(PAIR_ROWS * rowBytes, listBytes * chunks.length));
-  const groupPairsPerTile = Math.min((groups * (groups - 1)) / 2, Math.max(groups, largestTile));
+  const groupPairsPerTile = Math.min(groupPairs, Math.max(groups, largestTile));
   const drawnRows = Math.ceil(shots / 4) * 4;
   // Offset 0 would read as "none".
   let bytes = 64;

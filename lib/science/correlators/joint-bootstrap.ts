@@ -1,13 +1,13 @@
 import { bootstrapKernel, type BootstrapKernel } from "@/lib/science/correlators/bootstrap-kernel";
 import {
   GROUP_SITES,
+  groupCount,
   layOutBootstrap,
-  listGroupPairs,
   OWN_ROWS,
   PAIR_ROWS,
   type BootstrapLayout,
-  type GroupPair,
 } from "@/lib/science/correlators/bootstrap-layout";
+import { groupPairsFor, type GroupPair } from "@/lib/science/correlators/group-pairs";
 import { fineDrawLimits } from "@/lib/science/correlators/multiplicity-law";
 import { wordsPerSite, type PackedSpins } from "@/lib/science/correlators/packed-spins";
 import { pairIndex } from "@/lib/science/correlators/pairs";
@@ -19,9 +19,24 @@ import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
 export interface JointBootstrap {
   kernel: BootstrapKernel;
   layout: BootstrapLayout;
+  groupPairs: GroupPair[];
+  /** `[pair]`, 1 where replicates are asked for. */
+  needed: Uint8Array;
   timeIndex: number;
   key0: number;
   key1: number;
+}
+
+/** What a bootstrap of one evolution time depends on. */
+export interface BootstrapTask {
+  spins: PackedSpins;
+  readout: ReadoutCorrection | null;
+  replicates: number;
+  seed: number;
+  timeIndex: number;
+  /** `[pair]`, 1 where replicates are asked for. */
+  needed: Uint8Array;
+  traceCount: number;
 }
 
 /** A pair whose replicates can be read: offsets of its i32 row of shots with both sites up, `[replicate]`. */
@@ -42,18 +57,12 @@ const OWN_PAIRS = [
 ] as const;
 
 /**
- * Prepares `replicates` resamples of whole shots, drawn by (seed, timeIndex, replicate) alone. `traceCount` rows of
- * replicate values, set to 0, are laid out with them. Uses the thread's kernel: one bootstrap at a time in a thread.
+ * Prepares resamples of whole shots, drawn by (seed, timeIndex, replicate) alone, whichever pairs are asked for. `traceCount` rows
+ * of replicate values, set to 0, are laid out with them. Uses the thread's kernel: one bootstrap at a time in a thread.
  */
-export function prepareJointBootstrap(
-  spins: PackedSpins,
-  readout: ReadoutCorrection | null,
-  replicates: number,
-  seed: number,
-  timeIndex: number,
-  traceCount: number,
-): JointBootstrap {
-  const layout = layOutBootstrap(spins.shots, spins.sites, replicates, traceCount);
+export function prepareJointBootstrap({ spins, readout, replicates, seed, timeIndex, needed, traceCount }: BootstrapTask): JointBootstrap {
+  const groupPairs = groupPairsFor(spins.sites, groupCount(spins.sites), needed);
+  const layout = layOutBootstrap(spins.shots, spins.sites, replicates, groupPairs.length, traceCount);
   const kernel = bootstrapKernel(layout.bytes);
   const memory = kernel.memory.buffer;
   const readings = new Uint32Array(memory, layout.words, layout.groups * GROUP_SITES * wordsPerSite(spins.shots));
@@ -66,7 +75,7 @@ export function prepareJointBootstrap(
     const words = layout.words + g * GROUP_SITES * wordsPerSite(spins.shots) * 4;
     kernel.readGroup(words, wordsPerSite(spins.shots), spins.shots, layout.nibbles + g * spins.shots);
   }
-  return { kernel, layout, timeIndex, ...seedKey(seed) };
+  return { kernel, layout, groupPairs, needed, timeIndex, ...seedKey(seed) };
 }
 
 function writeReadout(memory: Float64Array, layout: BootstrapLayout, readout: ReadoutCorrection | null): void {
@@ -83,16 +92,16 @@ function writeReadout(memory: Float64Array, layout: BootstrapLayout, readout: Re
 }
 
 /**
- * Counts all replicates of all pairs, and calls `onPairs` with those that can be read until it returns. All sites'
- * counts (`siteRow`) can be read from the first call on. Where memory is short it draws the same replicates again.
+ * Counts all replicates of the needed pairs, and calls `onPairs` with those that can be read until it returns. The counts of their
+ * sites (`siteRow`) can be read from the first call on. Where memory is short it draws the same replicates again.
  */
 export function countReplicates(run: JointBootstrap, onPairs: (pairs: CountedPair[]) => void): void {
-  const groupPairs = listGroupPairs(run.layout.groups);
-  const step = run.layout.groupPairsPerTile;
+  const { groupPairs, layout, needed } = run;
+  const step = layout.groupPairsPerTile;
   for (let first = 0; first < groupPairs.length; first += step) {
     const tile = groupPairs.slice(first, first + step);
     countTile(run, tile);
-    onPairs(pairsOfTile(run.layout, tile));
+    onPairs(pairsOfTile(layout, tile).filter(({ pair }) => needed[pair] === 1));
   }
 }
 
@@ -103,23 +112,19 @@ export function siteRow(layout: BootstrapLayout, i: number): number {
 }
 
 function countTile(run: JointBootstrap, tile: readonly GroupPair[]): void {
-  const { kernel, layout } = run;
+  const { layout } = run;
   listShots(run, tile);
   for (let block = 0; block < layout.blocks; block++) {
-    kernel.drawMultiplicities(
-      layout.weights,
-      layout.shots,
-      block,
-      run.timeIndex,
-      RANDOM_PURPOSES.bootstrapShots,
-      RANDOM_PURPOSES.bootstrapRepairs,
-      run.key0,
-      run.key1,
-      layout.fineTable,
-      layout.scratch,
-    );
+    drawBlock(run, block);
     tile.forEach((pair, slot) => countGroupPair(run, pair, slot, block));
   }
+}
+
+/** Draws how often each shot is in replicates 32 · block … 32 · block + 31, bytes `[shot][32]` at `layout.weights`. */
+export function drawBlock({ kernel, layout, timeIndex, key0, key1 }: JointBootstrap, block: number): void {
+  const { bootstrapShots, bootstrapRepairs } = RANDOM_PURPOSES;
+  const { weights, shots, fineTable, scratch } = layout;
+  kernel.drawMultiplicities(weights, shots, block, timeIndex, bootstrapShots, bootstrapRepairs, key0, key1, fineTable, scratch);
 }
 
 function listShots({ kernel, layout }: JointBootstrap, tile: readonly GroupPair[]): void {
@@ -157,8 +162,8 @@ function pairsOfTile(layout: BootstrapLayout, tile: readonly GroupPair[]): Count
       pairs.push({ i: low, j: high, pair: pairIndex(layout.sites, low, high), bothUp });
     }
   };
-  tile.forEach(({ a, b, own }, slot) => {
-    for (let row = 0; row < PAIR_ROWS; row++) {
+  tile.forEach(({ a, b, own, across }, slot) => {
+    for (let row = 0; across && row < PAIR_ROWS; row++) {
       const bothUp = layout.pairRows + (slot * PAIR_ROWS + row) * layout.rowBytes;
       add(GROUP_SITES * a + (row >> 2), GROUP_SITES * b + (row & 3), bothUp);
     }

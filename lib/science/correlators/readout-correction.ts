@@ -1,4 +1,5 @@
 import type { BrightIs } from "@/lib/science/correlators/packed-spins";
+import { factorMoments as momentsOf, type FactorMoments } from "@/lib/science/correlators/bootstrap-law";
 import { createRandomStream } from "@/lib/science/stats/philox";
 import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
 import { drawBeta } from "@/lib/science/stats/random-variates";
@@ -24,6 +25,8 @@ export interface ReadoutReplicates {
   inverseFactor: Float64Array;
   /** `[site][replicate]` */
   offset: Float64Array;
+  /** `[site]`, of inverseFactor over the replicates. */
+  factorMoments: FactorMoments[];
 }
 
 /** What a detection says of its readout errors, every array `[site]`. */
@@ -94,7 +97,10 @@ export function drawReadoutReplicates(
       offset[i * replicateCount + b] = sign * (falseBright - falseDark);
     }
   }
-  return { inverseFactor, offset };
+  const factorMoments = Array.from({ length: sites }, (_, i) => {
+    return momentsOf(inverseFactor.subarray(i * replicateCount, (i + 1) * replicateCount));
+  });
+  return { inverseFactor, offset, factorMoments };
 }
 
 function drawRate(wrong: number, shots: number, stream: ReturnType<typeof createRandomStream>): number {

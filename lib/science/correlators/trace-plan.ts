@@ -16,6 +16,11 @@ export interface TracePlan {
   pairs: Uint32Array;
 }
 
+/** Returns the indices of a trace's pairs. */
+export function pairsOfTrace({ offsets, pairs }: TracePlan, trace: number): Uint32Array {
+  return pairs.subarray(offsets[trace], offsets[trace + 1]);
+}
+
 /** Where the sites are, in units of the mean spacing. */
 export interface SitePositions {
   /** `[site]` */

@@ -3,8 +3,8 @@
  * seed. A number once given keeps its meaning, else recorded seeds would give other results.
  */
 export const RANDOM_PURPOSES = {
-  /** Which shots a bootstrap replicate holds; index is the time k. */
-  bootstrapShots: 1,
+  /** The states of the generators that say which shots a bootstrap replicate holds; index is the time k. 1 is retired. */
+  bootstrapShots: 10,
   /** The ε's of a bootstrap replicate; index is the site i. */
   readoutErrors: 2,
   /** Simulated runs. */

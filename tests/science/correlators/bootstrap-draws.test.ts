@@ -2,15 +2,16 @@ import { describe, expect, it } from "vitest";
 import { bootstrapKernel } from "@/lib/science/correlators/bootstrap-kernel";
 import { layOutBootstrap } from "@/lib/science/correlators/bootstrap-layout";
 import { BYTE_SHARES, fineDrawLimits, MULTIPLICITY_RATE } from "@/lib/science/correlators/multiplicity-law";
+import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
 import { chiSquareSurvival, normalCdf } from "@/lib/science/stats/special-functions";
-import { plainMultiplicities } from "@/tests/science/correlators/plain-bootstrap";
+import { nextXoshiro, plainMultiplicities } from "@/tests/science/correlators/plain-bootstrap";
 
 /** Multiplicities `[shot][32]` of one block of replicates. */
 function drawBlock(shots: number, block: number, time: number, seed: number): Uint8Array {
-  const layout = layOutBootstrap(shots, 2, 32, 0);
+  const layout = layOutBootstrap(shots, 2, 32, 1, 0);
   const kernel = bootstrapKernel(layout.bytes);
   new Uint32Array(kernel.memory.buffer, layout.fineTable, 16).set(fineDrawLimits());
-  kernel.drawMultiplicities(layout.weights, shots, block, time, 1, 4, seed, 0, layout.fineTable, layout.scratch);
+  kernel.drawMultiplicities(layout.weights, shots, block, time, RANDOM_PURPOSES.bootstrapShots, RANDOM_PURPOSES.bootstrapRepairs, seed, 0, layout.fineTable, layout.scratch);
   return new Uint8Array(kernel.memory.buffer, layout.weights, shots * 32).slice();
 }
 
@@ -31,6 +32,12 @@ describe("the multiplicities of the bootstrap", () => {
       const law = (Math.exp(-MULTIPLICITY_RATE) * MULTIPLICITY_RATE ** n) / factorial(n);
       expect(Math.abs(drawn - law)).toBeLessThan(2e-12);
     }
+  });
+
+  // The sequence from state {1, 2, 3, 4} of the generator's published source, in checks, section 13.
+  it("follow a twin that gives the published words of xoshiro128**", () => {
+    const state = Uint32Array.of(1, 2, 3, 4);
+    expect(Array.from({ length: 6 }, () => nextXoshiro(state))).toEqual([11520, 0, 5927040, 70819200, 2031721883, 1637235492]);
   });
 
   it.each([1, 2, 5, 63, 64, 65, 1000])("of %i shots are those of the plain twin", (shots) => {

@@ -1,5 +1,5 @@
 /** The slow, obvious twin of the bootstrap: the same random draws, plain loops, nothing shared with the kernel. */
-import { createRandomStream, type RandomStream } from "@/lib/science/stats/philox";
+import { createRandomStream, philoxBlock, seedKey, type RandomStream } from "@/lib/science/stats/philox";
 import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
 
 const RATE = 0.978;
@@ -31,13 +31,29 @@ function drawBelow(bound: number, stream: RandomStream): number {
   }
 }
 
+/** The xoshiro128** generator of Blackman and Vigna (2021), as published: returns its next 32-bit word and moves the state on. */
+export function nextXoshiro(state: Uint32Array): number {
+  const rotate = (x: number, k: number) => ((x << k) | (x >>> (32 - k))) >>> 0;
+  const word = Math.imul(rotate(Math.imul(state[1], 5) >>> 0, 7), 9) >>> 0;
+  const shifted = state[1] << 9;
+  state[2] ^= state[0];
+  state[3] ^= state[1];
+  state[1] ^= state[2];
+  state[0] ^= state[3];
+  state[2] ^= shifted;
+  state[3] = rotate(state[3], 11);
+  return word;
+}
+
 /** How often each of `shots` shots is in replicate b of evolution time k. */
 export function plainMultiplicities(seed: number, k: number, b: number, shots: number): number[] {
-  const bytes = createRandomStream(seed, RANDOM_PURPOSES.bootstrapShots, k, Math.floor(b / 4));
+  const { key0, key1 } = seedKey(seed);
+  const state = new Uint32Array(4);
+  philoxBlock(Math.floor(b / 4) % 8, Math.floor(b / 32), k, RANDOM_PURPOSES.bootstrapShots, key0, key1, state, 0);
   const repairs = createRandomStream(seed, RANDOM_PURPOSES.bootstrapRepairs, k, b);
   const times: number[] = [];
   for (let s = 0; s < shots; s++) {
-    const byte = (bytes.nextUint32() >>> (8 * (b % 4))) & 0xff;
+    const byte = (nextXoshiro(state) >>> (8 * (b % 4))) & 0xff;
     times.push(firstDraw((byte + 128) % 256, repairs));
   }
   let total = times.reduce((sum, n) => sum + n, 0);

@@ -2,7 +2,7 @@
  * How often each shot is drawn in 32 bootstrap replicates at once: independent Poisson(0.978) draws of a byte each,
  * completed to exactly M shots a replicate. docs/validation.md shows that this is the plain bootstrap.
  */
-import { philoxAcrossLanes, secondRoundFactor, secondRoundHigh, secondRoundLow } from "./philox-simd";
+import { philoxStates } from "./philox-simd";
 import { nextBelow, nextWord, startRepairStreams } from "./repair-stream";
 
 /** Bytes of one shot's row: one byte for each replicate of a block. */
@@ -22,48 +22,72 @@ const UNSURE: usize = 2816;
 
 /**
  * Writes the multiplicities of replicates 32 · block … 32 · block + 31 to `weights` [shot][32], bytes, with room for a
- * multiple of four shots. `fineTable` holds the 16 limits of the finer draw; `scratch` 11 264 bytes.
+ * multiple of two shots. `fineTable` holds the 16 limits of the finer draw; `scratch` 11 264 bytes.
+ * The bytes are those of eight xoshiro128** generators (Blackman and Vigna 2021), one for each four replicates, started from Philox.
  */
 export function drawMultiplicities(
   weights: usize, shots: u32, block: u32, time: u32, purpose: u32, repairPurpose: u32, key0: u32, key1: u32,
   fineTable: usize, scratch: usize,
 ): void {
+  const states = scratch + UNSURE;
+  philoxStates(0, block, time, purpose, key0, key1, states);
+  philoxStates(4, block, time, purpose, key0, key1, states + 64);
+  let a0 = v128.load(states);
+  let a1 = v128.load(states, 16);
+  let a2 = v128.load(states, 32);
+  let a3 = v128.load(states, 48);
+  let b0 = v128.load(states, 64);
+  let b1 = v128.load(states, 80);
+  let b2 = v128.load(states, 96);
+  let b3 = v128.load(states, 112);
   startRepairStreams(scratch, block << 5, time, repairPurpose, key0, key1);
-  const quads = i32x4.add(i32x4.splat(block << 3), i32x4(0, 1, 2, 3));
-  const leftFactor = secondRoundFactor(quads, time, key0);
-  const rightFactor = secondRoundFactor(i32x4.add(quads, i32x4.splat(4)), time, key0);
-  const leftHigh = secondRoundHigh(leftFactor);
-  const leftLow = secondRoundLow(leftFactor);
-  const rightHigh = secondRoundHigh(rightFactor);
-  const rightLow = secondRoundLow(rightFactor);
   const unsure = scratch + UNSURE;
   for (let strip: u32 = 0; strip < shots; strip += STRIP) {
     const end = min(strip + STRIP, shots);
     let last = unsure;
-    for (let s = strip; s < end; s += 4) {
+    for (let s = strip; s < end; s += 2) {
       const rows = weights + usize(s) * ROW;
-      philoxAcrossLanes(leftHigh, leftLow, s >> 2, time, purpose, key0, key1, rows, ROW);
-      philoxAcrossLanes(rightHigh, rightLow, s >> 2, time, purpose, key0, key1, rows + 16, ROW);
-      last = listUnsure(convertTwoRows(rows), rows, last);
-      last = listUnsure(convertTwoRows(rows + 2 * ROW), rows + 2 * ROW, last);
+      let bits: u64 = 0;
+      for (let row: usize = 0; row < 2; row++) {
+        const left = scrambled(a1);
+        const right = scrambled(b1);
+        const aShifted = i32x4.shl(a1, 9);
+        const bShifted = i32x4.shl(b1, 9);
+        a2 = v128.xor(a2, a0);
+        b2 = v128.xor(b2, b0);
+        a3 = v128.xor(a3, a1);
+        b3 = v128.xor(b3, b1);
+        a1 = v128.xor(a1, a2);
+        b1 = v128.xor(b1, b2);
+        a0 = v128.xor(a0, a3);
+        b0 = v128.xor(b0, b3);
+        a2 = v128.xor(a2, aShifted);
+        b2 = v128.xor(b2, bShifted);
+        a3 = v128.or(i32x4.shl(a3, 11), i32x4.shr_u(a3, 21));
+        b3 = v128.or(i32x4.shl(b3, 11), i32x4.shr_u(b3, 21));
+        const at = rows + row * ROW;
+        bits |= (u64(convert(left, at)) | (u64(convert(right, at + 16)) << 16)) << (row << 5);
+      }
+      last = listUnsure(bits, rows, last);
     }
     drawFiner(unsure, last, weights, weights + usize(shots) * ROW, fineTable);
   }
   completeBlock(weights, shots, scratch + TOTALS);
 }
 
-/** Turns 64 random bytes into multiplicities; returns a bit for each that is not sure. */
+/** The output of xoshiro128**: rotl(5 s₁, 7) · 9, with shifts for the products. */
 // @ts-ignore: decorator
 @inline
-function convertTwoRows(rows: usize): u64 {
-  const low = u64(convert(rows)) | (u64(convert(rows + 16)) << 16);
-  return low | (u64(convert(rows + 32)) << 32) | (u64(convert(rows + 48)) << 48);
+function scrambled(s1: v128): v128 {
+  const five = i32x4.add(i32x4.shl(s1, 2), s1);
+  const turned = v128.or(i32x4.shl(five, 7), i32x4.shr_u(five, 25));
+  return i32x4.add(i32x4.shl(turned, 3), turned);
 }
 
+/** Writes 16 random bytes as multiplicities; returns a bit for each that is not sure. */
 // @ts-ignore: decorator
 @inline
-function convert(at: usize): u32 {
-  const bytes = v128.load(at);
+function convert(bytes: v128, at: usize): u32 {
   const upTo2 = i8x16.add(
     i8x16.add(i8x16.gt_s(bytes, i8x16.splat(LAST_0)), i8x16.gt_s(bytes, i8x16.splat(LAST_1))),
     i8x16.gt_s(bytes, i8x16.splat(LAST_2)),
