@@ -14,7 +14,7 @@ export interface AnalysisParameters {
   /** How counts become spins: by thresholds, or weighted by the fitted count distributions without any. */
   reading: "threshold" | "threshold-free";
   /** `blockLength`: shots in a row that are resampled together, against drift; 1 resamples single shots. */
-  bootstrap: { replicates: number; seed: number; interval: "percentile" | "bca"; blockLength: number };
+  bootstrap: { replicates: number; seed: number; interval: "percentile" | "basic" | "bca"; blockLength: number };
   traces: { kind: "reference"; site: number } | { kind: "distance"; bulk?: number[] };
   front: {
     rule: "fraction-of-max" | "fixed-level" | "noise-multiple";

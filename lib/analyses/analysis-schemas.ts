@@ -8,8 +8,8 @@ const Bootstrap = z.strictObject({
   replicates: z.number().int().min(50).max(20_000).default(1000),
   /** The same default for everybody: a result is the same bytes again without writing anything down. */
   seed: z.number().int().min(0).max(Number.MAX_SAFE_INTEGER).default(1),
-  interval: z.enum(["percentile", "bca"]).default("percentile"),
-  blockLength: z.literal(1).default(1),
+  interval: z.enum(["percentile", "basic", "bca"]).default("percentile"),
+  blockLength: z.number().int().min(1).max(100_000).default(1),
 });
 
 const Traces = z.discriminatedUnion("kind", [

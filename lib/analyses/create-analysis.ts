@@ -13,7 +13,7 @@ import { invalidAt, isProblem, problem, type Problem } from "@/lib/problem";
 import { findRunInGroup, type RunRow, type RunVersionRow } from "@/lib/runs/find-run";
 import type { CreateAnalysisInput } from "./analysis-schemas";
 import { positionsOf } from "./analysis-positions";
-import { planTraces, readoutOf, replicatesProblem, sitesProblem } from "./plan-analysis";
+import { blockLengthProblem, planTraces, readoutOf, replicatesProblem, sitesProblem } from "./plan-analysis";
 import { PROGRAM_VERSION } from "./program-version";
 
 export interface StartedAnalysis {
@@ -83,6 +83,8 @@ function checkParameters(parameters: AnalysisParameters, sites: DetectionRow["si
   if (positions.length !== version.sites) return invalidAt("positions", `the run gives ${positions.length} positions for ${version.sites} sites`);
   const unfit = sitesProblem(version.sites);
   if (unfit) return unfit;
+  const tooLong = blockLengthProblem(parameters.bootstrap.blockLength, version.shotsPerTime);
+  if (tooLong) return tooLong;
   const plan = planTraces(parameters.traces, positions);
   if (isProblem(plan)) return plan;
   const tooLarge = replicatesProblem(plan, version.timesUs.length, parameters.bootstrap.replicates);

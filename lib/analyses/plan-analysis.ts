@@ -8,6 +8,7 @@ import { positionColumns } from "./analysis-positions";
 
 /** All pairs are counted at once in a thread's memory; twice the largest arrays there are. */
 const MOST_SITES = 512;
+const FEWEST_BLOCKS = 8;
 /** Joint replicates of all traces are held at once for the front. */
 const MOST_REPLICATE_BYTES = 1.5 * 1024 ** 3;
 
@@ -28,6 +29,13 @@ export function planTraces(traces: AnalysisParameters["traces"], positions: numb
 export function sitesProblem(sites: number): Problem | null {
   if (sites < 2) return invalidAt("sites", "a correlator needs at least two sites");
   return sites > MOST_SITES ? invalidAt("sites", `all pairs of ${sites} sites are too many; an analysis takes at most ${MOST_SITES}`) : null;
+}
+
+/** Returns a Problem when a time has too few shots to resample blocks of them: a few blocks tell nothing of their spread. */
+export function blockLengthProblem(blockLength: number, shotsPerTime: number[]): Problem | null {
+  const longest = Math.max(1, Math.floor(Math.min(...shotsPerTime) / FEWEST_BLOCKS));
+  if (blockLength <= longest) return null;
+  return invalidAt("bootstrap.blockLength", `the time with the fewest shots would have under ${FEWEST_BLOCKS} blocks; at most ${longest} shots in a row can be resampled together`);
 }
 
 /** Returns a Problem when the joint replicates would not fit into memory. */

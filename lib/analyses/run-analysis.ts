@@ -99,6 +99,7 @@ async function analyseTimes({ analysis, version, sites }: Inputs, plan: TracePla
       replicates: parameters.bootstrap.replicates,
       seed: parameters.bootstrap.seed,
       interval: parameters.bootstrap.interval,
+      blockLength: parameters.bootstrap.blockLength,
       pairErrors: "law",
     };
     const running: Promise<void> = context.pool

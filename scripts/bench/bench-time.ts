@@ -34,6 +34,7 @@ export function benchTime({ counts, shots, sites, timeIndex, replicates, plan }:
     replicates,
     seed: 1,
     interval: "percentile",
+    blockLength: 1,
     pairErrors: "law",
   });
   return { result, threshold_ms: packed - start, bootstrap_ms: performance.now() - packed };

@@ -100,6 +100,7 @@ export function analyseDemo(run: DemoCounts, corrected: boolean): AnalysedDemo {
       replicates: REPLICATES,
       seed: SEED,
       interval: "percentile",
+      blockLength: 1,
       pairErrors: "law",
     }),
   );

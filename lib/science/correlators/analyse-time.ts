@@ -26,9 +26,11 @@ export interface TimeTask {
   replicates: number;
   seed: number;
   interval: IntervalKind;
+  /** Consecutive shots that are resampled together, against drift; 1 resamples single shots. */
+  blockLength: number;
   /**
    * `law`: errors and intervals of single pairs and of means from their bootstrap law in closed form where it holds, replicates for
-   * what is judged jointly. `replicates`: everything from joint replicates, the plain bootstrap.
+   * what is judged jointly. `replicates`: everything from joint replicates, the plain bootstrap. With blocks there is no such law.
    */
   pairErrors: "law" | "replicates";
 }
@@ -78,7 +80,7 @@ export function analyseTime(task: TimeTask): TimeResult {
     return result;
   }
   const needed = new Uint8Array(pairCount(task.spins.sites)).fill(1);
-  if (task.pairErrors === "law") {
+  if (task.pairErrors === "law" && task.blockLength === 1) {
     lawOfMeans(task, counts, result);
     lawOfPairs(task, counts, result, needed);
   }

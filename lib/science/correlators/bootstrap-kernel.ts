@@ -18,6 +18,17 @@ export interface BootstrapKernel {
     fineTable: number,
     scratch: number,
   ): void;
+  drawRuns(
+    weights: number,
+    shots: number,
+    length: number,
+    block: number,
+    time: number,
+    purpose: number,
+    key0: number,
+    key1: number,
+    scratch: number,
+  ): void;
   readGroup(words: number, wordsPerSite: number, shots: number, nibbles: number): void;
   listPatterns(
     a: number,

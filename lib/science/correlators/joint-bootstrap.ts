@@ -22,6 +22,7 @@ export interface JointBootstrap {
   groupPairs: GroupPair[];
   /** `[pair]`, 1 where replicates are asked for. */
   needed: Uint8Array;
+  blockLength: number;
   timeIndex: number;
   key0: number;
   key1: number;
@@ -33,6 +34,8 @@ export interface BootstrapTask {
   readout: ReadoutCorrection | null;
   replicates: number;
   seed: number;
+  /** Consecutive shots that are resampled together, around the end; 1 resamples single shots. */
+  blockLength: number;
   timeIndex: number;
   /** `[pair]`, 1 where replicates are asked for. */
   needed: Uint8Array;
@@ -60,7 +63,7 @@ const OWN_PAIRS = [
  * Prepares resamples of whole shots, drawn by (seed, timeIndex, replicate) alone, whichever pairs are asked for. `traceCount` rows
  * of replicate values, set to 0, are laid out with them. Uses the thread's kernel: one bootstrap at a time in a thread.
  */
-export function prepareJointBootstrap({ spins, readout, replicates, seed, timeIndex, needed, traceCount }: BootstrapTask): JointBootstrap {
+export function prepareJointBootstrap({ spins, readout, replicates, seed, blockLength, timeIndex, needed, traceCount }: BootstrapTask): JointBootstrap {
   const groupPairs = groupPairsFor(spins.sites, groupCount(spins.sites), needed);
   const layout = layOutBootstrap(spins.shots, spins.sites, replicates, groupPairs.length, traceCount);
   const kernel = bootstrapKernel(layout.bytes);
@@ -75,7 +78,7 @@ export function prepareJointBootstrap({ spins, readout, replicates, seed, timeIn
     const words = layout.words + g * GROUP_SITES * wordsPerSite(spins.shots) * 4;
     kernel.readGroup(words, wordsPerSite(spins.shots), spins.shots, layout.nibbles + g * spins.shots);
   }
-  return { kernel, layout, groupPairs, needed, timeIndex, ...seedKey(seed) };
+  return { kernel, layout, groupPairs, needed, blockLength, timeIndex, ...seedKey(seed) };
 }
 
 function writeReadout(memory: Float64Array, layout: BootstrapLayout, readout: ReadoutCorrection | null): void {
@@ -121,9 +124,13 @@ function countTile(run: JointBootstrap, tile: readonly GroupPair[]): void {
 }
 
 /** Draws how often each shot is in replicates 32 · block … 32 · block + 31, bytes `[shot][32]` at `layout.weights`. */
-export function drawBlock({ kernel, layout, timeIndex, key0, key1 }: JointBootstrap, block: number): void {
-  const { bootstrapShots, bootstrapRepairs } = RANDOM_PURPOSES;
+export function drawBlock({ kernel, layout, blockLength, timeIndex, key0, key1 }: JointBootstrap, block: number): void {
+  const { bootstrapShots, bootstrapRepairs, bootstrapRuns } = RANDOM_PURPOSES;
   const { weights, shots, fineTable, scratch } = layout;
+  if (blockLength > 1) {
+    kernel.drawRuns(weights, shots, blockLength, block, timeIndex, bootstrapRuns, key0, key1, scratch);
+    return;
+  }
   kernel.drawMultiplicities(weights, shots, block, timeIndex, bootstrapShots, bootstrapRepairs, key0, key1, fineTable, scratch);
 }
 

@@ -32,11 +32,11 @@ interface Work {
  * lacks (NaN) for them.
  */
 export function jointReplicates(task: TimeTask, counts: UpCounts, result: TimeResult, needed: Uint8Array): void {
-  const { spins, readout, replicates, seed, timeIndex, plan } = task;
-  const run = prepareJointBootstrap({ spins, readout, replicates, seed, timeIndex, needed, traceCount: plan.distances.length });
+  const { spins, readout, replicates, seed, blockLength, timeIndex, plan } = task;
+  const run = prepareJointBootstrap({ spins, readout, replicates, seed, blockLength, timeIndex, needed, traceCount: plan.distances.length });
   const work = { task, run, counts, result, sharesOfPair: tracesOfPairs(plan) };
   countReplicates(run, (pairs) => pairs.forEach((pair) => analysePair(work, pair)));
-  if (task.pairErrors === "replicates") analyseMeans(work);
+  if (Number.isNaN(result.meanError[0])) analyseMeans(work);
   analyseTraces(work);
 }
 

@@ -15,6 +15,8 @@ export const RANDOM_PURPOSES = {
   nullFront: 6,
   /** Simulated repeats of an analysis; index is the time k, replicate the repeat. */
   selfTest: 7,
+  /** Where the runs of consecutive shots begin that a bootstrap replicate holds; index is the time k. */
+  bootstrapRuns: 9,
 } as const;
 
 export type RandomPurpose = (typeof RANDOM_PURPOSES)[keyof typeof RANDOM_PURPOSES];

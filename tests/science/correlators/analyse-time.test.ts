@@ -28,6 +28,7 @@ function task(spins: number[][], plan: TracePlan, changes: Partial<TimeTask> = {
     replicates: 70,
     seed: SEED,
     interval: "percentile",
+    blockLength: 1,
     pairErrors: "replicates",
     ...changes,
   };

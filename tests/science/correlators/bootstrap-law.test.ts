@@ -128,7 +128,7 @@ const readout = { ...exactReadoutCorrection(rates, "up"), replicates: drawReadou
 
 function task(changes: Partial<TimeTask>): TimeTask {
   const plan = planReferenceTraces(chain, 4);
-  return { timeIndex: 2, spins, estimator: "unbiased", readout: null, plan, replicates: REPLICATES, seed: 8, interval: "percentile", pairErrors: "law", ...changes };
+  return { timeIndex: 2, spins, estimator: "unbiased", readout: null, plan, replicates: REPLICATES, seed: 8, interval: "percentile", blockLength: 1, pairErrors: "law", ...changes };
 }
 
 describe("errors in closed form", () => {

@@ -92,6 +92,7 @@ function analyse({ expected, counts }: Run, plan: TracePlan): TimeResult[] {
       replicates: REPLICATES,
       seed: 12,
       interval: "percentile",
+      blockLength: 1,
       pairErrors: "law",
     });
   });
