@@ -13,5 +13,6 @@ export function correlatorsNpz(correlators: Correlators): Uint8Array {
     error: matrix(correlators.error),
     low: matrix(correlators.low),
     high: matrix(correlators.high),
+    ...(correlators.pValue && { p_value: matrix(correlators.pValue) }),
   });
 }

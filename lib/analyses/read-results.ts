@@ -6,7 +6,7 @@ import type { TracePlan } from "@/lib/science/correlators/trace-plan";
 import type { FrontResult } from "@/lib/science/front/front-result";
 import { planTraces } from "./plan-analysis";
 import type { AnalysisRow } from "./find-analysis";
-import { readArray, readJson, readMarks } from "./result-arrays";
+import { hasResult, readArray, readJson, readMarks } from "./result-arrays";
 import type { StoredPlan } from "./store-results";
 
 /** Numbers as JSON has them: null where there is no number. */
@@ -31,6 +31,10 @@ export interface Correlators {
   high: Numbers[];
   /** `[t][pair]`, true where an outcome is so rare that no bootstrap interval covers. */
   fewFlips: boolean[][];
+  /** `[t][pair]`, two-sided p-value of C = 0; null, as `significant`, in analyses from before it was kept. */
+  pValue: Numbers[] | null;
+  /** `[t][pair]`, true among the discoveries at a false-discovery rate of 5 % over all pairs and times (Benjamini and Hochberg). */
+  significant: boolean[][] | null;
 }
 
 export interface Traces {
@@ -46,6 +50,11 @@ export interface Traces {
   high: Numbers[];
   /** `[trace][t]`, true where any pair of the trace has few flips. */
   fewFlips: boolean[][];
+  /** `[trace][t]`, 95 % bands that hold whole traces; null where joint replicates are not kept. */
+  bandLow: Numbers[] | null;
+  bandHigh: Numbers[] | null;
+  /** `[trace][t]`, as for pairs, or over all distances and times; null where unknown. */
+  significant: boolean[][] | null;
 }
 
 /** Returns means and all pairs, at every time or at one. */
@@ -58,7 +67,8 @@ export async function readCorrelators(row: AnalysisRow, timeIndex?: number): Pro
   const pairs = pairCount(sites);
   if (count * pairs > MOST_CELLS) return problem("too-large", `${count} times of ${pairs} pairs are too much for one answer; ask for one time after another with ?time_index=.`);
   const rows = async (name: string, width: number) => inRows(await readArray(database(), row.analysis.id, name, first * width, count * width), width);
-  const marks = await readMarks(database(), row.analysis.id, "fewFlips");
+  const marks = async (name: string) => marksInRows(await readMarks(database(), row.analysis.id, name), first, count, pairs);
+  const isTested = await hasResult(database(), row.analysis.id, "pValue");
   const list = listPairs(sites);
   return {
     times_us: row.timesUs.slice(first, first + count),
@@ -71,7 +81,9 @@ export async function readCorrelators(row: AnalysisRow, timeIndex?: number): Pro
     error: await rows("error", pairs),
     low: await rows("low", pairs),
     high: await rows("high", pairs),
-    fewFlips: Array.from({ length: count }, (_, k) => Array.from(marks.subarray((first + k) * pairs, (first + k + 1) * pairs), Boolean)),
+    fewFlips: await marks("fewFlips"),
+    pValue: isTested ? await rows("pValue", pairs) : null,
+    significant: isTested ? await marks("significant") : null,
   };
 }
 
@@ -91,7 +103,8 @@ export async function readTraces(row: AnalysisRow): Promise<Traces> {
     error: await rows("traceError"),
     low: await rows("traceLow"),
     high: await rows("traceHigh"),
-    fewFlips: await readTraceMarks(row, pairsOfTraces(tracePlan)),
+    fewFlips: await readTraceMarks(row, "fewFlips", pairsOfTraces(tracePlan)),
+    ...(await readJoint(row, tracePlan, rows)),
   };
 }
 
@@ -113,7 +126,10 @@ export async function readReferenceTraces(row: AnalysisRow, reference: number): 
     error: await pick("error"),
     low: await pick("low"),
     high: await pick("high"),
-    fewFlips: await readTraceMarks(row, columns),
+    fewFlips: await readTraceMarks(row, "fewFlips", columns),
+    bandLow: null,
+    bandHigh: null,
+    significant: (await hasResult(database(), row.analysis.id, "significant")) ? await readTraceMarks(row, "significant", columns) : null,
   };
 }
 
@@ -124,8 +140,20 @@ export async function readDistanceTraces(row: AnalysisRow): Promise<Traces | Pro
   const columns = pairsOfTraces(plan);
   const value = pickMeans(await readArray(database(), row.analysis.id, "value"), pairCount(row.siteNames.length), columns);
   const none = value.map((trace) => trace.map(() => null));
-  const fewFlips = await readTraceMarks(row, columns);
-  return { kind: "distance", referenceSite: null, labels: plan.labels, distances: Array.from(plan.distances), times_us: row.timesUs, value, error: none, low: none, high: none, fewFlips };
+  const fewFlips = await readTraceMarks(row, "fewFlips", columns);
+  return { kind: "distance", referenceSite: null, labels: plan.labels, distances: Array.from(plan.distances), times_us: row.timesUs, value, error: none, low: none, high: none, fewFlips, bandLow: null, bandHigh: null, significant: null };
+}
+
+/** What only joint replicates tell; null in analyses from before it was kept. */
+async function readJoint(row: AnalysisRow, plan: TracePlan, rows: (name: string) => Promise<Numbers[]>) {
+  const id = row.analysis.id;
+  if (!(await hasResult(database(), id, "traceSignificant"))) return { bandLow: null, bandHigh: null, significant: null };
+  const ofTraces = async () => marksInRows(await readMarks(database(), id, "traceSignificant"), 0, plan.labels.length, row.timesUs.length);
+  return {
+    bandLow: await rows("traceBandLow"),
+    bandHigh: await rows("traceBandHigh"),
+    significant: plan.kind === "reference" ? await readTraceMarks(row, "significant", pairsOfTraces(plan)) : await ofTraces(),
+  };
 }
 
 /** `[trace]`, the pair indices of each trace. */
@@ -134,14 +162,18 @@ function pairsOfTraces({ labels, offsets, pairs }: TracePlan): number[][] {
 }
 
 /** `[trace][t]`, true where any pair of the trace is marked. */
-async function readTraceMarks(row: AnalysisRow, pairsOfTrace: number[][]): Promise<boolean[][]> {
-  const marks = await readMarks(database(), row.analysis.id, "fewFlips");
+async function readTraceMarks(row: AnalysisRow, name: string, pairsOfTrace: number[][]): Promise<boolean[][]> {
+  const marks = await readMarks(database(), row.analysis.id, name);
   const width = pairCount(row.siteNames.length);
   return pairsOfTrace.map((pairs) => row.timesUs.map((_, k) => pairs.some((pair) => marks[k * width + pair] === 1)));
 }
 
 export function readFront(row: AnalysisRow): Promise<FrontResult> {
   return readJson<FrontResult>(database(), row.analysis.id, "front");
+}
+
+function marksInRows(marks: Uint8Array, first: number, count: number, width: number): boolean[][] {
+  return Array.from({ length: count }, (_, row) => Array.from(marks.subarray((first + row) * width, (first + row + 1) * width), Boolean));
 }
 
 function inRows(values: Float64Array, width: number): Numbers[] {

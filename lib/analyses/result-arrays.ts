@@ -1,5 +1,5 @@
 import "server-only";
-import { eq } from "drizzle-orm";
+import { and, eq } from "drizzle-orm";
 import { readBytes, writeBytes } from "@/db/blobs";
 import type { Database } from "@/db/connection";
 import { analyses } from "@/db/schema/analyses";
@@ -47,6 +47,12 @@ export async function readArray(database: Database, analysisId: string, name: st
 /** Returns a uint8 result. Throws when it is not there. */
 export async function readMarks(database: Database, analysisId: string, name: string): Promise<Uint8Array> {
   return Uint8Array.from(await readRange(database, analysisId, name, 0, Infinity));
+}
+
+/** Tells whether an analysis keeps a result of this name. */
+export async function hasResult(database: Database, analysisId: string, name: string): Promise<boolean> {
+  const rows = await database.select({ part: resultArrays.part }).from(resultArrays).where(and(eq(resultArrays.analysisId, analysisId), eq(resultArrays.name, name))).limit(1);
+  return rows.length > 0;
 }
 
 /** Returns a result that is JSON. Throws when it is not there. */

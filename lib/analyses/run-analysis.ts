@@ -10,13 +10,12 @@ import type { TimeResult } from "@/lib/science/correlators/analyse-time";
 import { collectTraces } from "@/lib/science/correlators/collect-traces";
 import type { ReadoutCorrection } from "@/lib/science/correlators/readout-correction";
 import type { TracePlan } from "@/lib/science/correlators/trace-plan";
-import type { FrontAnalysis } from "@/lib/science/front/analyse-front";
 import type { TraceSet } from "@/lib/science/front/trace-set";
 import { planTraces, readoutOf } from "./plan-analysis";
 import { removeArraysOfNobody } from "./result-arrays";
 import { storeResults } from "./store-results";
 import { summarise } from "./summarise";
-import type { FrontMessage, TimeMessage } from "./thread-task";
+import type { FrontAnswer, FrontMessage, TimeMessage } from "./thread-task";
 
 type AnalysisRow = typeof analyses.$inferSelect;
 type VersionRow = typeof runVersions.$inferSelect;
@@ -44,12 +43,12 @@ export async function runAnalysisJob(job: JobRow, context: JobContext): Promise<
   const results = await analyseTimes(inputs, plan, readout, context);
   context.progress("crossings, fits and verdict", CORRELATOR_SHARE);
   const traces = collectTraces(plan, Float64Array.from(version.timesUs), results, replicates);
-  const front = await runFront(traces, parameters, context);
+  const { front, bands } = await runFront(traces, parameters, context);
   context.progress("storing", 0.97);
   context.signal.throwIfAborted();
   try {
     // An earlier attempt may have written some of these; the same bytes replace themselves.
-    await storeResults(context.database, analysis.id, { plan, parameters, results, traces, front });
+    await storeResults(context.database, analysis.id, { plan, parameters, results, traces, front, bands });
     await context.finish(async (transaction) => {
       await transaction
         .update(analyses)
@@ -117,8 +116,8 @@ async function analyseTimes({ analysis, version, sites }: Inputs, plan: TracePla
   return results.sort((first, second) => first.timeIndex - second.timeIndex);
 }
 
-function runFront(traces: TraceSet, { front }: AnalysisParameters, { pool, signal }: JobContext): Promise<FrontAnalysis> {
+function runFront(traces: TraceSet, { front }: AnalysisParameters, { pool, signal }: JobContext): Promise<FrontAnswer> {
   const { throughOrigin, powerLawIn, ...rule } = front;
   const message: FrontMessage = { traces, rule, options: { throughOrigin, powerLawIn } };
-  return pool.run(message, { name: "frontInThread", signal }) as Promise<FrontAnalysis>;
+  return pool.run(message, { name: "frontInThread", signal }) as Promise<FrontAnswer>;
 }

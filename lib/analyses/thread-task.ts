@@ -1,4 +1,5 @@
 import { analyseTime, type TimeResult, type TimeTask } from "@/lib/science/correlators/analyse-time";
+import { simultaneousBands, type SimultaneousBands } from "@/lib/science/correlators/simultaneous-bands";
 import { packSpins, type BrightIs } from "@/lib/science/correlators/packed-spins";
 import { analyseFront, type FrontAnalysis } from "@/lib/science/front/analyse-front";
 import type { FrontFitOptions, FrontRule } from "@/lib/science/front/front-rule";
@@ -25,7 +26,12 @@ export interface FrontMessage {
   options: FrontFitOptions;
 }
 
-/** Traces and their replicates to crossings, fits and verdict. */
-export function frontInThread({ traces, rule, options }: FrontMessage): FrontAnalysis {
-  return analyseFront(traces, rule, options);
+export interface FrontAnswer {
+  front: FrontAnalysis;
+  bands: SimultaneousBands;
+}
+
+/** Traces and their replicates to crossings, fits and verdict, and to bands that hold whole traces. */
+export function frontInThread({ traces, rule, options }: FrontMessage): FrontAnswer {
+  return { front: analyseFront(traces, rule, options), bands: simultaneousBands(traces) };
 }

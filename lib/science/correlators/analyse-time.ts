@@ -7,6 +7,7 @@ import {
   type CorrelatorEstimator,
   type UpCounts,
 } from "@/lib/science/correlators/connected-correlators";
+import { independencePValue, twoSidedPValue } from "@/lib/science/correlators/independence-test";
 import { jointReplicates } from "@/lib/science/correlators/joint-error-bars";
 import { lawOfMeans, lawOfPairs } from "@/lib/science/correlators/law-error-bars";
 import type { PackedSpins } from "@/lib/science/correlators/packed-spins";
@@ -51,6 +52,8 @@ export interface TimeResult {
   high: Float64Array;
   /** `[pair]`, 1 where a joint outcome is expected in fewer than 5 shots: no bootstrap interval covers there. */
   fewFlips: Uint8Array;
+  /** `[pair]`, two-sided p-value of C = 0: of the outcomes, or of C/error where blocks of shots are resampled. */
+  pValue: Float64Array;
   /** `[trace]` */
   traceValue: Float64Array;
   traceError: Float64Array;
@@ -85,6 +88,8 @@ export function analyseTime(task: TimeTask): TimeResult {
     lawOfPairs(task, counts, result, needed);
   }
   jointReplicates(task, counts, result, needed);
+  // Shots that resemble their neighbours hold less than their number says, which a test of the outcomes would not see.
+  if (task.blockLength > 1) result.pValue = result.value.map((value, pair) => twoSidedPValue(value / result.error[pair]));
   return result;
 }
 
@@ -104,6 +109,7 @@ function valuesWithoutErrors(task: TimeTask, counts: UpCounts): TimeResult {
     low: undefinedRow(pairs),
     high: undefinedRow(pairs),
     fewFlips,
+    pValue: pairPValues(counts),
     traceValue: new Float64Array(traces),
     traceError: undefinedRow(traces),
     traceLow: undefinedRow(traces),
@@ -118,6 +124,11 @@ function findFewFlips(counts: UpCounts): Uint8Array {
   return Uint8Array.from(counts.bothUp, (_, pair) =>
     hasFewFlips(jointOutcomes(counts, pairs[2 * pair], pairs[2 * pair + 1], pair)) ? 1 : 0,
   );
+}
+
+function pairPValues(counts: UpCounts): Float64Array {
+  const pairs = listPairs(counts.up.length);
+  return Float64Array.from(counts.bothUp, (_, pair) => independencePValue(jointOutcomes(counts, pairs[2 * pair], pairs[2 * pair + 1], pair)));
 }
 
 function anyOfTrace(plan: TracePlan, flags: Uint8Array): Uint8Array {
