@@ -21,6 +21,8 @@ interface CorrelationMapViewProps {
   data: MapData;
   /** `[row][k]`, standard errors for the read-out. */
   errors?: ((number | null)[] | null)[];
+  /** `[row][k]`; cells that are false are left blank. */
+  shown?: (boolean[] | null)[] | null;
   height: number;
   limit?: number;
   crossings?: MapCrossing[];
@@ -37,15 +39,15 @@ const NO_CURVES: FrontCurve[] = [];
 
 /** The correlation map on a page: canvas cells, marks above, one cursor for pointer and keys, and a table twin. */
 export function CorrelationMap(props: CorrelationMapViewProps) {
-  const { data, height, crossings = NO_CROSSINGS, curves = NO_CURVES, preview = false } = props;
+  const { data, shown, height, crossings = NO_CROSSINGS, curves = NO_CURVES, preview = false } = props;
   const [container, width] = useMeasuredWidth<HTMLDivElement>(640);
   const themeName = useThemeName();
   const size = useMemo(() => ({ width, height }), [width, height]);
   const limit = props.limit ?? colourLimit(data.rows);
   const geometry = useMemo(() => mapGeometry(data, size), [data, size]);
   const colour = useCallback(
-    (row: number, column: number) => divergingColour(themeName, data.rows[row].values?.[column], limit),
-    [data, themeName, limit],
+    (row: number, column: number) => (shown?.[row]?.[column] === false ? null : divergingColour(themeName, data.rows[row].values?.[column], limit)),
+    [data, shown, themeName, limit],
   );
   const { cursor, handlers } = useCursor(
     {
@@ -62,7 +64,7 @@ export function CorrelationMap(props: CorrelationMapViewProps) {
       caption={props.caption}
       actions={props.actions}
       hint={props.onPickRow && "Point, touch or use the arrow keys to read values; a click or Enter picks the row."}
-      readOut={cursor && readOut(data, props.errors, cursor)}
+      readOut={cursor && readOut(props, cursor)}
       table={() => <MapTable data={data} errors={props.errors} />}
     >
       <div ref={container} className="relative" style={{ height }}>
@@ -123,7 +125,7 @@ function cellAt(x: number, y: number, geometry: ReturnType<typeof mapGeometry>):
   return { column, row };
 }
 
-function readOut(data: MapData, errors: CorrelationMapViewProps["errors"], cursor: Cursor): ReactNode {
+function readOut({ data, errors, shown }: CorrelationMapViewProps, cursor: Cursor): ReactNode {
   const row = data.rows[cursor.row];
   const time = plainNumber(data.times_us[cursor.column], 6);
   const name = data.rowName === "site" ? siteText(row.label) : `${data.rowName} ${row.label}`;
@@ -134,6 +136,7 @@ function readOut(data: MapData, errors: CorrelationMapViewProps["errors"], curso
     <>
       {name}
       {distance}, t = {time} µs: <strong className="text-ink">C = {value}</strong>
+      {shown?.[cursor.row]?.[cursor.column] === false && ", not significant"}
     </>
   );
 }

@@ -11,6 +11,9 @@ export interface TraceLine {
   value: (number | null)[];
   low: (number | null)[];
   high: (number | null)[];
+  /** `[k]`, the band that holds the whole trace; null or left out where it is not known. */
+  bandLow?: (number | null)[] | null;
+  bandHigh?: (number | null)[] | null;
   /** The crossing and the level it was read at. */
   crossing?: { time_us: number; low_us: number | null; high_us: number | null; level: number | null; resolved: boolean };
 }
@@ -37,7 +40,7 @@ function lineOpacity(q: number, lines: number): number {
 export function traceGeometry(lines: TraceLine[], size: ChartSize, labelled = false) {
   const area = plotArea(size, { left: 44, right: labelled ? 64 : 14, top: 26, bottom: 40 });
   const times = lines.flatMap((line) => line.times_us);
-  const values = lines.flatMap((line) => [...line.low, ...line.high, ...line.value]).filter((value) => value !== null);
+  const values = lines.flatMap((line) => [...line.low, ...line.high, ...line.value, ...(line.bandLow ?? []), ...(line.bandHigh ?? [])]).filter((value) => value !== null);
   const [first, last] = extent(times);
   const [lowest, highest] = extent(values);
   return {
@@ -60,7 +63,10 @@ export function TraceChartMarks({ lines, size, theme, preview = false, labelled 
       <line x1={area.left} x2={area.right} y1={round(correlator(0))} y2={round(correlator(0))} stroke={theme.hairline} />
       {lines.map((line, q) => (
         <g key={line.label} opacity={lineOpacity(q, lines.length)}>
-          {lines.length <= MOST_BANDS && <path d={bandPath(line, time, correlator)} fill={theme.accent} opacity={0.18} />}
+          {lines.length === 1 && line.bandLow && line.bandHigh && (
+            <path d={bandPath(line.times_us, line.bandLow, line.bandHigh, time, correlator)} fill={theme.accent} opacity={0.09} />
+          )}
+          {lines.length <= MOST_BANDS && <path d={bandPath(line.times_us, line.low, line.high, time, correlator)} fill={theme.accent} opacity={0.18} />}
           <path d={valuePath(line, time, correlator)} fill="none" stroke={theme.accent} strokeWidth={1.6} strokeDasharray={preview ? "5 4" : undefined} />
           {lines.length === 1 &&
             line.value.map((value, k) =>
@@ -84,13 +90,15 @@ function valuePath(line: TraceLine, time: Geometry["time"], correlator: Geometry
   return path(line.times_us.map((_, k) => k)) ?? "";
 }
 
-function bandPath(line: TraceLine, time: Geometry["time"], correlator: Geometry["correlator"]): string {
+type Samples = (number | null)[];
+
+function bandPath(times_us: number[], low: Samples, high: Samples, time: Geometry["time"], correlator: Geometry["correlator"]): string {
   const path = areaShape<number>()
-    .defined((k) => line.low[k] !== null && line.high[k] !== null)
-    .x((k) => round(time(line.times_us[k])))
-    .y0((k) => round(correlator(line.low[k] ?? 0)))
-    .y1((k) => round(correlator(line.high[k] ?? 0)));
-  return path(line.times_us.map((_, k) => k)) ?? "";
+    .defined((k) => low[k] !== null && high[k] !== null)
+    .x((k) => round(time(times_us[k])))
+    .y0((k) => round(correlator(low[k] ?? 0)))
+    .y1((k) => round(correlator(high[k] ?? 0)));
+  return path(times_us.map((_, k) => k)) ?? "";
 }
 
 function CrossingMark({ line, geometry, theme }: { line: TraceLine; geometry: Geometry; theme: ChartTheme }) {

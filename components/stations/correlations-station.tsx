@@ -43,6 +43,7 @@ export function CorrelationsStation({ analysisId, siteNames, traces: own }: Corr
   );
   const traces = view === ownView ? own : shown;
   const map = useMemo(() => traceMap(traces, siteNames), [traces, siteNames]);
+  const [mask, setMask] = useUrlState("mask", "off");
   const limit = colourLimit(map.data.rows);
   const firstTrace = map.traceOfRow.findIndex((trace) => trace !== null);
   const row = rowText === "" || map.traceOfRow[Number(rowText)] == null ? firstTrace : Number(rowText);
@@ -61,6 +62,15 @@ export function CorrelationsStation({ analysisId, siteNames, traces: own }: Corr
             ))}
           </select>
         </label>
+        {map.significant && (
+          <label className="flex min-h-9 items-center gap-2">
+            <input type="checkbox" className="size-4 accent-(--ink)" checked={mask === "on"} onChange={(event) => setMask(event.target.checked ? "on" : "off")} />
+            significant cells only
+          </label>
+        )}
+        {map.significant && mask === "on" && (
+          <p className="label max-w-[48ch]">Of the cells left, 5 % on average are there by chance (Benjamini and Hochberg); a blank cell is not a zero.</p>
+        )}
         {view !== ownView && view === "distance" && (
           <p className="label max-w-[48ch]">Averaged from the saved pairs. Joint error bars of averages belong to an analysis made by distance.</p>
         )}
@@ -73,6 +83,7 @@ export function CorrelationsStation({ analysisId, siteNames, traces: own }: Corr
             caption="pick a row to see its trace"
             data={map.data}
             errors={map.errors}
+            shown={mask === "on" ? map.significant : null}
             limit={limit}
             height={390}
             chosenRow={row}
@@ -81,7 +92,7 @@ export function CorrelationsStation({ analysisId, siteNames, traces: own }: Corr
           />
           <TraceChart
             title={`C against time, ${traceName(traces, trace, siteNames)}`}
-            caption={traces.low[trace].some((low) => low !== null) ? "with its 95 % band" : "without a band"}
+            caption={bandCaption(traces, trace)}
             line={traceLine(traces, trace)}
             errors={traces.error[trace]}
             height={240}
@@ -95,6 +106,11 @@ export function CorrelationsStation({ analysisId, siteNames, traces: own }: Corr
       </div>
     </>
   );
+}
+
+function bandCaption(traces: TracesAnswer, trace: number): string {
+  if (traces.low[trace].every((low) => low === null)) return "without error bars";
+  return traces.bandLow ? "dark: 95 % at each time; light: 95 % for the whole trace" : "with 95 % intervals at each time";
 }
 
 interface MatrixAtTimeProps {

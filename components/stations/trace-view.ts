@@ -18,12 +18,19 @@ export interface TracesAnswer {
   error: (number | null)[][];
   low: (number | null)[][];
   high: (number | null)[][];
+  /** Bands that hold whole traces; null where joint replicates are not kept. */
+  bandLow: (number | null)[][] | null;
+  bandHigh: (number | null)[][] | null;
+  /** Among the discoveries at a false-discovery rate of 5 %; null where unknown. */
+  significant: boolean[][] | null;
 }
 
 export interface TraceMap {
   data: MapData;
   /** `[row][k]`; null for the reference's own row. */
   errors: ((number | null)[] | null)[];
+  /** `[row][k]`, whether a cell is significant; null for the reference's own row, and as a whole where unknown. */
+  significant: (boolean[] | null)[] | null;
   /** Trace of a row; null for the reference's own row. */
   traceOfRow: (number | null)[];
 }
@@ -46,6 +53,7 @@ export function traceMap(traces: TracesAnswer, siteNames: string[]): TraceMap {
       })),
     },
     errors: traceOfRow.map((trace) => (trace === null ? null : traces.error[trace])),
+    significant: traces.significant && traceOfRow.map((trace) => (trace === null ? null : (traces.significant?.[trace] ?? null))),
     traceOfRow,
   };
 }
@@ -96,6 +104,8 @@ export function traceLine(traces: TracesAnswer, trace: number, point?: FrontPoin
     value: traces.value[trace],
     low: traces.low[trace],
     high: traces.high[trace],
+    bandLow: traces.bandLow?.[trace],
+    bandHigh: traces.bandHigh?.[trace],
     crossing:
       point?.time_us === null || point?.time_us === undefined
         ? undefined

@@ -12,6 +12,9 @@ const traces: TracesAnswer = {
   error: [[0.01, 0.02], [0.03, null]],
   low: [[0, 0], [0, null]],
   high: [[1, 1], [1, null]],
+  bandLow: [[-1, -1], [-1, null]],
+  bandHigh: [[2, 2], [2, null]],
+  significant: [[false, true], [true, false]],
 };
 
 describe("the map of reference-site traces", () => {
@@ -20,6 +23,8 @@ describe("the map of reference-site traces", () => {
     expect(data.rows.map(({ label, distance }) => [label, distance])).toEqual([["a", 1], ["b", null], ["c", 1]]);
     expect(data.rows.map(({ values }) => values)).toEqual([[0.1, 0.2], null, [0.3, null]]);
     expect(traceOfRow).toEqual([0, null, 1]);
+    expect(traceMap(traces, ["a", "b", "c"]).significant).toEqual([[false, true], null, [true, false]]);
+    expect(traceMap({ ...traces, significant: null }, ["a", "b", "c"]).significant).toBeNull();
     expect(errors[1]).toBeNull();
   });
 
