@@ -1,6 +1,6 @@
 /**
  * `npm run bench`: the main job on a surrogate run, ours with one and two threads against the NumPy baseline, turn by
- * turn on the same cores; medians. Options: --sites 16 --times 40 --shots 4000 --rounds 3.
+ * turn on the same cores; medians. Options: --sites 16 --times 40 --shots 4000 --rounds 3; --kernels measures our own steps instead.
  */
 import { spawnSync } from "node:child_process";
 import { existsSync, mkdirSync } from "node:fs";
@@ -17,6 +17,7 @@ const { values: options } = parseArgs({
     times: { type: "string", default: "40" },
     shots: { type: "string", default: "4000" },
     rounds: { type: "string", default: "3" },
+    kernels: { type: "boolean", default: false },
     python: { type: "string", default: existsSync("/usr/bin/python3") ? "/usr/bin/python3" : "python3" },
   },
 });
@@ -35,6 +36,7 @@ await build({
   entryPoints: {
     "analyse-run": `${root}scripts/bench/analyse-run.ts`,
     "time-thread": `${root}scripts/bench/time-thread.ts`,
+    "time-kernels": `${root}scripts/bench/time-kernels.ts`,
   },
   outdir: folder,
   outExtension: { ".js": ".mjs" },
@@ -47,6 +49,12 @@ await build({
 });
 const file = `${folder}/run-${options.sites}-${options.times}-${options.shots}.npz`;
 if (!existsSync(file)) run(options.python, [baseline, "--make", options.sites, options.times, options.shots, file]);
+
+if (options.kernels) {
+  console.log(`N = ${options.sites}, T = ${options.times}, M = ${options.shots}, B = 1000, one thread`);
+  console.log(run(process.execPath, [`${folder}/time-kernels.mjs`, file, options.rounds]).trimEnd());
+  process.exit(0);
+}
 
 const measured = new Map();
 for (let round = 0; round < Number(options.rounds); round++) {
