@@ -1,6 +1,6 @@
-import { neelQuench } from "@/lib/science/theory/free-fermion-chain";
-import { isingFieldQuench } from "@/lib/science/theory/transverse-ising-chain";
-import type { DeterminantLaw, MajoranaLaw } from "@/lib/science/theory/spin-law";
+import { determinantMoments, neelQuench } from "@/lib/science/theory/free-fermion-chain";
+import { isingFieldQuench, majoranaMoments } from "@/lib/science/theory/transverse-ising-chain";
+import type { DeterminantLaw, MajoranaLaw, SpinMoments } from "@/lib/science/theory/spin-law";
 
 /**
  * Which nearest-neighbour chain a run is held against. `xy`: ½ J Σ (σxσx + σyσy) from the Néel state. `ising`: the
@@ -15,4 +15,9 @@ export type NearestNeighbourModel = "xy" | "ising";
 export function nearestNeighbourLaws(model: NearestNeighbourModel, sites: number, j_hz: number, times_us: Float64Array): (DeterminantLaw | MajoranaLaw)[] {
   const couplingTimes = times_us.map((time) => 2 * Math.PI * j_hz * 1e-6 * time);
   return model === "xy" ? neelQuench(sites, couplingTimes) : isingFieldQuench(sites, 1, 1, couplingTimes);
+}
+
+/** Returns ⟨σ_i⟩ `[site]` and C_ij `[pair]` of a model's state. */
+export function nearestNeighbourMoments(law: DeterminantLaw | MajoranaLaw): SpinMoments {
+  return law.kind === "determinant" ? determinantMoments(law) : majoranaMoments(law);
 }

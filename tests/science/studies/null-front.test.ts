@@ -1,0 +1,166 @@
+import { describe, expect, it } from "vitest";
+import { planDistanceTraces, planReferenceTraces } from "@/lib/science/correlators/trace-plan";
+import { DEFAULT_FRONT_FIT_OPTIONS, DEFAULT_FRONT_RULE } from "@/lib/science/front/front-rule";
+import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
+import { frontNumbers } from "@/lib/science/studies/front-numbers";
+import { judgeNullFront } from "@/lib/science/studies/judge-null-front";
+import { nullFrontRepeat, planNullFront, type NullFrontPlan } from "@/lib/science/studies/null-front";
+import type { NullFrontInput } from "@/lib/science/studies/null-front-input";
+import type { NullFrontRepeat } from "@/lib/science/studies/null-front-result";
+import { analyseSimulatedRun } from "@/lib/science/studies/simulated-run";
+import { isStudyRefusal } from "@/lib/science/studies/study-refusal";
+import { gaussianLawOf } from "@/lib/science/theory/gaussian-law";
+
+const SITES = 8;
+const chain = { x: Float64Array.from({ length: SITES }, (_, i) => i), y: null };
+/** 4Jt from 0.1 to 9 over 24 times, J/2π = 1 kHz: the signals of distances 1 to 6 have their maxima inside. */
+const times_us = Float64Array.from({ length: 24 }, (_, k) => ((0.1 + (8.9 * k) / 23) / (4 * 2 * Math.PI * 1000)) * 1e6);
+
+function inputOf(changes: Partial<NullFrontInput> = {}): NullFrontInput {
+  return {
+    model: "xy",
+    positions: chain,
+    jMax_hz: 1000,
+    observedPoints: [],
+    times_us,
+    shotsPerTime: new Float64Array(times_us.length).fill(400),
+    readoutErrors: { falseBright: new Float64Array(SITES).fill(0.01), falseDark: new Float64Array(SITES).fill(0.03) },
+    readoutCorrected: true,
+    brightIs: "up",
+    estimator: "plug-in",
+    interval: "percentile",
+    traces: planDistanceTraces(chain),
+    rule: DEFAULT_FRONT_RULE,
+    options: DEFAULT_FRONT_FIT_OPTIONS,
+    replicates: 60,
+    seed: 5,
+    ...changes,
+  };
+}
+
+function planOf(changes: Partial<NullFrontInput> = {}): NullFrontPlan {
+  const plan = planNullFront(inputOf(changes));
+  if (isStudyRefusal(plan)) throw new Error(plan.message);
+  return plan;
+}
+
+function repeatsOf(plan: NullFrontPlan, count: number): NullFrontRepeat[] {
+  return Array.from({ length: count }, (_, repeat) => nullFrontRepeat(plan, repeat));
+}
+
+/** Kolmogorov's distance of values from the uniform law on (0, 1). */
+function distanceFromUniform(values: number[]): number {
+  const sorted = [...values].sort((a, b) => a - b);
+  return Math.max(...sorted.map((value, m) => Math.max(Math.abs((m + 1) / sorted.length - value), Math.abs(value - m / sorted.length))));
+}
+
+describe.each([
+  ["xy", 400],
+  ["ising", 1500],
+] as const)("the null front of the nearest-neighbour %s chain", (model, shots) => {
+  const shotsPerTime = new Float64Array(times_us.length).fill(shots);
+  const plan = planOf({ model, shotsPerTime });
+  const repeats = repeatsOf(plan, 250);
+
+  it("has uniform p-values for data that are themselves null", () => {
+    // Other seed, so other draws of the same model; the law of p is the same for any continuous γ.
+    const data = repeatsOf(planOf({ model, shotsPerTime, seed: 99 }), 250);
+    const pValues = data.flatMap(({ gamma }) => judgeNullFront(plan, repeats, gamma).pValue ?? []);
+    expect(pValues.length).toBeGreaterThan(240);
+    // 99.9 % point of the two-sample Kolmogorov–Smirnov statistic, 1.95 √(2/250).
+    expect(distanceFromUniform(pValues)).toBeLessThan(1.95 * Math.sqrt(2 / 250) + 1 / 250);
+  });
+
+  it("is seldom called faster than itself", () => {
+    const data = repeatsOf(planOf({ model, shotsPerTime, seed: 77 }), 250);
+    const faster = data.filter(({ gamma }) => judgeNullFront(plan, repeats, gamma).fasterThanNearestNeighbour).length;
+    // 2.5 % of 250 is 6.25 ± 2.5; the threshold's own scatter doubles the variance: four deviations.
+    expect(faster).toBeLessThanOrEqual(6.25 + 4 * 3.5);
+  });
+
+  it("scatters about what the extractor reads without noise", () => {
+    const { gamma, noiseFree } = judgeNullFront(plan, repeats, 1);
+    expect(noiseFree.gamma).not.toBeNull();
+    expect(gamma.low).toBeLessThan(noiseFree.gamma ?? NaN);
+    expect(gamma.high).toBeGreaterThan(noiseFree.gamma ?? NaN);
+  });
+
+  it("gives each repeat the same result in any order", () => {
+    expect(nullFrontRepeat(plan, 7)).toEqual(repeats[7]);
+    expect(nullFrontRepeat(structuredClone(plan), 3)).toEqual(repeats[3]);
+  });
+});
+
+describe("an accelerating front held against the null front", () => {
+  /** τ ∝ d^½ with the null's own shots: the front of a long-range model, by construction. */
+  const plan = planOf({ shotsPerTime: new Float64Array(times_us.length).fill(1500) });
+  const mean = new Float64Array(SITES);
+  const laws = Array.from(times_us, (time) => {
+    const correlator = Float64Array.from({ length: (SITES * (SITES - 1)) / 2 });
+    let pair = 0;
+    for (let i = 0; i < SITES; i++) {
+      for (let j = i + 1; j < SITES; j++) correlator[pair++] = 0.35 / (1 + Math.exp(-(time / (55 * Math.sqrt(j - i)) - 1.5) * 8)) / Math.sqrt(j - i);
+    }
+    return gaussianLawOf({ mean, correlator }).law;
+  });
+
+  it("is called faster than a nearest-neighbour cone", () => {
+    const repeats = repeatsOf(plan, 60);
+    const { front } = analyseSimulatedRun({ ...plan.run, laws, purpose: RANDOM_PURPOSES.simulation }, 0);
+    const judged = judgeNullFront(plan, repeats, frontNumbers(front).gamma);
+    expect(judged.observed.gamma).toBeLessThan(0.8);
+    expect(judged.fasterThanNearestNeighbour).toBe(true);
+    expect(judged.pValue).toBeCloseTo(1 / 61, 12);
+    expect(judged.sentence).toMatch(/^Faster than a nearest-neighbour cone: γ = 0\.\d\d, and 0 of 60 simulated runs/);
+  });
+});
+
+describe("the coupling of the null front", () => {
+  it("is matched so that the model crosses where the nearest observed point does", () => {
+    const known = planOf();
+    const points = known.noiseFree.points.map(({ label, distance, time_us, fitted }) => ({
+      label,
+      distance,
+      time_us,
+      fitted,
+      error_us: 1,
+      low_us: null,
+      high_us: null,
+      status: "resolved" as const,
+      failedShare: 0,
+      level: null,
+      warnings: [],
+    }));
+    const { coupling } = planOf({ jMax_hz: null, observedPoints: points });
+    expect(coupling).toMatchObject({ source: "matched", matchedDistance: 1 });
+    expect(coupling.j_hz / 1000).toBeCloseTo(1, 2);
+  });
+
+  it("is refused without a coupling and without a point", () => {
+    expect(planNullFront(inputOf({ jMax_hz: null }))).toMatchObject({ where: "jMax_hz" });
+  });
+});
+
+describe("a null front", () => {
+  it("works with reference traces and bright spins down, without readout errors", () => {
+    const plan = planOf({ traces: planReferenceTraces(chain, 0), readoutErrors: null, brightIs: "down" });
+    expect(plan.noiseFree.points).toHaveLength(SITES - 1);
+    expect(nullFrontRepeat(plan, 0).points).toBeGreaterThanOrEqual(3);
+  });
+
+  it("is refused for planar arrays, and where readout cannot be corrected", () => {
+    const plane = { x: chain.x, y: new Float64Array(SITES) };
+    expect(planNullFront(inputOf({ positions: plane }))).toMatchObject({ where: "positions" });
+    const blind = { falseBright: new Float64Array(SITES).fill(0.5), falseDark: new Float64Array(SITES).fill(0.45) };
+    expect(planNullFront(inputOf({ readoutErrors: blind }))).toMatchObject({ where: "readoutErrors" });
+  });
+
+  it("gives no verdict without repeats or without an observed fit", () => {
+    const plan = planOf();
+    expect(judgeNullFront(plan, [], 0.5)).toMatchObject({ pValue: null, fasterThanNearestNeighbour: false, shareWithoutFit: null });
+    const judged = judgeNullFront(plan, repeatsOf(plan, 3), null);
+    expect(judged.pValue).toBeNull();
+    expect(judged.sentence).toContain("no power-law fit");
+    expect(judged.warnings[0]).toContain("39 are needed");
+  });
+});
