@@ -52,7 +52,7 @@ export interface TimeResult {
   high: Float64Array;
   /** `[pair]`, 1 where a joint outcome is expected in fewer than 5 shots: no bootstrap interval covers there. */
   fewFlips: Uint8Array;
-  /** `[pair]`, two-sided p-value of C = 0: of the outcomes, or of C/error where blocks of shots are resampled. */
+  /** `[pair]`, two-sided p-value of C = 0: of the outcomes, or of C/error where blocks of shots are resampled. NaN in a preview. */
   pValue: Float64Array;
   /** `[trace]` */
   traceValue: Float64Array;
@@ -109,7 +109,7 @@ function valuesWithoutErrors(task: TimeTask, counts: UpCounts): TimeResult {
     low: undefinedRow(pairs),
     high: undefinedRow(pairs),
     fewFlips,
-    pValue: pairPValues(counts),
+    pValue: task.replicates === 0 ? undefinedRow(pairs) : pairPValues(counts),
     traceValue: new Float64Array(traces),
     traceError: undefinedRow(traces),
     traceLow: undefinedRow(traces),
