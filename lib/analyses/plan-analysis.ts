@@ -1,6 +1,6 @@
 import type { AnalysisParameters } from "@/db/schema/analyses";
 import type { DetectionSite } from "@/db/schema/detections";
-import { exactReadoutCorrection, drawReadoutReplicates, sitesBeyondCorrection, type ReadoutCorrection, type ReadoutErrors, type ReadoutEvidence } from "@/lib/science/correlators/readout-correction";
+import { exactReadoutCorrection, drawReadoutReplicates, sitesBeyondCorrection, sitesPoorlyKnown, type ReadoutCorrection, type ReadoutErrors, type ReadoutEvidence } from "@/lib/science/correlators/readout-correction";
 import { planDistanceTraces, planReferenceTraces, type TracePlan } from "@/lib/science/correlators/trace-plan";
 import type { BrightIs } from "@/lib/science/correlators/packed-spins";
 import { invalidAt, problem, type Problem } from "@/lib/problem";
@@ -62,7 +62,11 @@ export function readoutOf(sites: DetectionSite[], brightIs: BrightIs, seed: numb
   if (beyond.length > 0) return invalidAt("readoutCorrection", `F = 1 − ε_d − ε_b is not above 0.2 at site ${beyond.join(", ")}; dividing by it would turn noise into a result`);
   const exact = exactReadoutCorrection(errors, brightIs);
   const evidence = evidenceOf(sites);
-  return evidence ? { ...exact, replicates: drawReadoutReplicates(evidence, brightIs, seed, replicates) } : exact;
+  if (!evidence) return exact;
+  const drawn = drawReadoutReplicates(evidence, brightIs, seed, replicates);
+  const poor = sitesPoorlyKnown(drawn);
+  if (poor.length === 0) return { ...exact, replicates: drawn };
+  return invalidAt("readoutCorrection", `the error rates at site ${poor.join(", ")} are too poorly known: within their uncertainty 1 − ε_d − ε_b reaches 0.1; take more calibration shots`);
 }
 
 /** The counts behind the ε's; null when a site has none, and then the ε's are taken as exact. */

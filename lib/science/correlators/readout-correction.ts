@@ -103,6 +103,16 @@ export function drawReadoutReplicates(
   return { inverseFactor, offset, factorMoments };
 }
 
+/**
+ * Returns the sites, in order, whose F is so poorly known that a replicate's is at most half the least F: a few such replicates would
+ * make up the whole error bar.
+ */
+export function sitesPoorlyKnown({ inverseFactor, factorMoments: { length: sites } }: ReadoutReplicates): number[] {
+  const replicates = inverseFactor.length / sites;
+  const isSound = (inverse: number) => inverse > 0 && inverse < 2 / LEAST_READOUT_FACTOR;
+  return Array.from({ length: sites }, (_, i) => i).filter((i) => !inverseFactor.subarray(i * replicates, (i + 1) * replicates).every(isSound));
+}
+
 function drawRate(wrong: number, shots: number, stream: ReturnType<typeof createRandomStream>): number {
   return drawBeta(stream, wrong + 0.5, shots - wrong + 0.5);
 }

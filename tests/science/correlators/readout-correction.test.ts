@@ -1,6 +1,7 @@
 import { describe, expect, it } from "vitest";
 import {
   drawReadoutReplicates,
+  sitesPoorlyKnown,
   exactReadoutCorrection,
   readoutFactors,
   sitesBeyondCorrection,
@@ -8,6 +9,20 @@ import {
 import { mean, standardDeviation } from "@/lib/science/stats/intervals";
 
 const REPLICATES = 4000;
+
+describe("readout errors that few calibration shots leave open", () => {
+  const evidenceOf = (shots: number) => ({
+    falseBrightShots: Float64Array.of(0.05 * shots, 0.3 * shots),
+    darkShots: Float64Array.of(shots, shots),
+    falseDarkShots: Float64Array.of(0.05 * shots, 0.35 * shots),
+    brightShots: Float64Array.of(shots, shots),
+  });
+
+  it("are named by site when a replicate's F comes near zero, and sound with more shots", () => {
+    expect(sitesPoorlyKnown(drawReadoutReplicates(evidenceOf(40), "up", 3, 1000))).toEqual([1]);
+    expect(sitesPoorlyKnown(drawReadoutReplicates(evidenceOf(4000), "up", 3, 1000))).toEqual([]);
+  });
+});
 
 describe("the readout correction", () => {
   it("refuses sites whose F is not above 0.2, by name", () => {
