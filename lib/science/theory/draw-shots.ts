@@ -1,6 +1,7 @@
 import { wordsPerSite, type PackedSpins } from "@/lib/science/correlators/packed-spins";
 import type { RandomStream } from "@/lib/science/stats/philox";
-import { drawBinomial, drawNormal } from "@/lib/science/stats/random-variates";
+import { drawBinomial } from "@/lib/science/stats/random-variates";
+import { fillWithNormals } from "@/lib/science/stats/ziggurat";
 import { conditionalDeterminant, conditionalMajorana, type ConditionalState } from "@/lib/science/theory/conditional-fermions";
 import type { GaussianLaw, SpinLaw } from "@/lib/science/theory/spin-law";
 
@@ -61,7 +62,7 @@ function drawGaussian({ sites, factor, threshold }: GaussianLaw, shots: number, 
   const stride = wordsPerSite(shots);
   const noise = new Float64Array(sites);
   for (let s = 0; s < shots; s++) {
-    for (let i = 0; i < sites; i++) noise[i] = drawNormal(stream);
+    fillWithNormals(noise, stream);
     for (let i = 0; i < sites; i++) {
       let field = 0;
       for (let j = 0; j <= i; j++) field += factor[i * sites + j] * noise[j];
