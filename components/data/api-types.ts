@@ -10,7 +10,7 @@ export interface ProblemAnswer {
 
 export interface JobAnswer {
   id: string;
-  kind: "ingest" | "analysis";
+  kind: "ingest" | "analysis" | "study";
   state: "queued" | "running" | "done" | "failed" | "cancelled";
   progress: number;
   stage: string;

@@ -15,14 +15,14 @@ interface RunHeadProps {
     createdAt: string;
   };
   /** Under way for this run. */
-  jobs: { id: string; kind: "ingest" | "analysis" }[];
+  jobs: { id: string; kind: "ingest" | "analysis" | "study" }[];
   mayCancel: boolean;
   mayDelete: boolean;
   dependents: { archives: number; detections: number; analyses: number };
 }
 
 const MODELS = { ising: "Ising", xy: "XY", other: null };
-const JOB_TITLES = { ingest: "Reading the archives", analysis: "Analysing" };
+const JOB_TITLES = { ingest: "Reading the archives", analysis: "Analysing", study: "Studying the front" };
 
 /** Title and facts of a run, and what is under way. */
 export function RunHead({ run, jobs, mayCancel, mayDelete, dependents }: RunHeadProps) {

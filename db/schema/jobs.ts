@@ -4,7 +4,10 @@ import { id, jsonText, moment } from "./columns";
 import { groups } from "./groups";
 import { users } from "./users";
 
-export type JobPayload = { kind: "ingest"; runId: string } | { kind: "analysis"; analysisId: string; runId: string };
+export type JobPayload =
+  | { kind: "ingest"; runId: string }
+  | { kind: "analysis"; analysisId: string; runId: string }
+  | { kind: "study"; studyId: string; runId: string };
 
 /** Work for the worker processes. Every UPDATE of a running job names `lockedBy`, so that a lost lock cannot write. */
 export const jobs = mysqlTable(
@@ -12,7 +15,7 @@ export const jobs = mysqlTable(
   {
     id: id().primaryKey(),
     groupId: id().notNull().references(() => groups.id),
-    kind: mysqlEnum(["ingest", "analysis"]).notNull(),
+    kind: mysqlEnum(["ingest", "analysis", "study"]).notNull(),
     runId: id().notNull(),
     payload: jsonText<JobPayload>()().notNull(),
     state: mysqlEnum(["queued", "running", "done", "failed", "cancelled"]).notNull(),

@@ -44,6 +44,7 @@ export const POLICY = {
   "detection.create": { from: "analyst", scope: "analyse" },
   "analysis.read": { from: "reader", scope: "read" },
   "analysis.create": { from: "analyst", scope: "analyse" },
+  "study.create": { from: "analyst", scope: "analyse" },
 } as const satisfies Record<string, Rule>;
 
 export type Action = keyof typeof POLICY;

@@ -4,6 +4,17 @@ import { packSpins, type BrightIs } from "@/lib/science/correlators/packed-spins
 import { analyseFront, type FrontAnalysis } from "@/lib/science/front/analyse-front";
 import type { FrontFitOptions, FrontRule } from "@/lib/science/front/front-rule";
 import type { TraceSet } from "@/lib/science/front/trace-set";
+import { nullFrontRepeat, planNullFront, type NullFrontPlan } from "@/lib/science/studies/null-front";
+import type { NullFrontInput } from "@/lib/science/studies/null-front-input";
+import type { NullFrontRepeat } from "@/lib/science/studies/null-front-result";
+import { planSelfTest, selfTestRepeat, type SelfTestPlan } from "@/lib/science/studies/self-test";
+import type { SelfTestInput } from "@/lib/science/studies/self-test-input";
+import type { SelfTestRepeat } from "@/lib/science/studies/self-test-result";
+import type { StudyRefusal } from "@/lib/science/studies/study-refusal";
+import { sweepFront } from "@/lib/science/studies/sweep";
+import type { SweepInput } from "@/lib/science/studies/sweep-input";
+import type { SweepResult } from "@/lib/science/studies/sweep-result";
+import { sweepTime, type SweepTime, type SweepTimeTask } from "@/lib/science/studies/sweep-time";
 
 /** One evolution time as it is sent to a thread. */
 export interface TimeMessage extends Omit<TimeTask, "spins"> {
@@ -34,4 +45,42 @@ export interface FrontAnswer {
 /** Traces and their replicates to crossings, fits and verdict, and to bands that hold whole traces. */
 export function frontInThread({ traces, rule, options }: FrontMessage): FrontAnswer {
   return { front: analyseFront(traces, rule, options), bands: simultaneousBands(traces) };
+}
+
+/** One evolution time of a sensitivity sweep. */
+export function sweepTimeInThread(task: SweepTimeTask): SweepTime {
+  return sweepTime(task);
+}
+
+export interface SweepMessage {
+  input: SweepInput;
+  times: SweepTime[];
+}
+
+/** All combinations of a sensitivity sweep. */
+export function sweepInThread({ input, times }: SweepMessage): SweepResult {
+  return sweepFront(input, times);
+}
+
+/** A batch of a study's simulated repeats, `first` to `first + count − 1`. */
+export interface RepeatsMessage<Plan> {
+  plan: Plan;
+  first: number;
+  count: number;
+}
+
+export function nullFrontPlanInThread(input: NullFrontInput): NullFrontPlan | StudyRefusal {
+  return planNullFront(input);
+}
+
+export function nullFrontRepeatsInThread({ plan, first, count }: RepeatsMessage<NullFrontPlan>): NullFrontRepeat[] {
+  return Array.from({ length: count }, (_, at) => nullFrontRepeat(plan, first + at));
+}
+
+export function selfTestPlanInThread(input: SelfTestInput): SelfTestPlan | StudyRefusal {
+  return planSelfTest(input);
+}
+
+export function selfTestRepeatsInThread({ plan, first, count }: RepeatsMessage<SelfTestPlan>): SelfTestRepeat[] {
+  return Array.from({ length: count }, (_, at) => selfTestRepeat(plan, first + at));
 }

@@ -12,7 +12,7 @@ const ProblemBody = z.object({
 
 export const JobAnswer = z.object({
   id: z.string(),
-  kind: z.enum(["ingest", "analysis"]),
+  kind: z.enum(["ingest", "analysis", "study"]),
   runId: z.string(),
   state: z.enum(["queued", "running", "done", "failed", "cancelled"]),
   progress: z.number().min(0).max(1),

@@ -3,7 +3,7 @@ import { problemDocument, type ProblemDocument } from "@/lib/http/answers";
 
 export interface ShownJob {
   id: string;
-  kind: "ingest" | "analysis";
+  kind: "ingest" | "analysis" | "study";
   runId: string;
   state: "queued" | "running" | "done" | "failed" | "cancelled";
   progress: number;

@@ -1,11 +1,11 @@
 import path from "node:path";
 
 /**
- * The capabilities by floor, from the roof down: figures are drawn of analyses, an analysis stands on a detection, that on a
+ * The capabilities by floor, from the roof down: figures are drawn of analyses, studies ask about them, an analysis stands on a detection, that on a
  * run, whose reading is a job, which a member asked for. Rooms of one floor may use each other: a run is read from its
  * archives and an archive belongs to a run; who asks is part of every request.
  */
-const CAPABILITY_FLOORS = [["lib/figures"], ["lib/analyses"], ["lib/detections"], ["lib/runs", "lib/archives"], ["lib/jobs"], ["lib/health"], ["lib/http", "lib/accounts"]];
+const CAPABILITY_FLOORS = [["lib/figures"], ["lib/studies"], ["lib/analyses"], ["lib/detections"], ["lib/runs", "lib/archives"], ["lib/jobs"], ["lib/health"], ["lib/http", "lib/accounts"]];
 
 /** What every capability may use. */
 const GROUND = ["lib/science", "lib/formats", "lib/problem", "lib/number-text", "db"];

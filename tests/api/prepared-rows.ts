@@ -5,6 +5,7 @@ import { analyses } from "@/db/schema/analyses";
 import { archives } from "@/db/schema/archives";
 import { blobChunks, blobs } from "@/db/schema/blobs";
 import { detections } from "@/db/schema/detections";
+import { frontStudies } from "@/db/schema/front-studies";
 import { jobs } from "@/db/schema/jobs";
 import { runVersions } from "@/db/schema/run-versions";
 import { runs } from "@/db/schema/runs";
@@ -15,12 +16,12 @@ const POSITIONS = [[0], [1]];
 const SHOTS_FILE = Buffer.from("time_us,site_0,site_1\n0,1,0\n0,0,9\n");
 
 /** One id of each kind of thing that paths name, by the collection in the path. */
-export type PreparedIds = Record<"runs" | "archives" | "jobs" | "detections" | "analyses" | "tokens", string>;
+export type PreparedIds = Record<"runs" | "archives" | "jobs" | "detections" | "analyses" | "studies" | "tokens", string>;
 
 /** Writes a run with everything that hangs on it, and a token of the member's own; returns their ids. */
 export async function prepareRows({ groupId, userId: createdBy }: Pick<Member, "groupId" | "userId">): Promise<PreparedIds> {
   const createdAt = new Date();
-  const ids: PreparedIds = { runs: newId(), archives: newId(), jobs: newId(), detections: newId(), analyses: newId(), tokens: newId() };
+  const ids: PreparedIds = { runs: newId(), archives: newId(), jobs: newId(), detections: newId(), analyses: newId(), studies: newId(), tokens: newId() };
   const made = { groupId, runId: ids.runs, createdBy, createdAt };
   const archive = { archiveId: ids.archives, filename: "shots.csv", sha256: sha256Of(ids.archives), role: "shots", format: "csv" } as const;
 
@@ -35,14 +36,16 @@ export async function prepareRows({ groupId, userId: createdBy }: Pick<Member, "
     runId: ids.runs, number: 1, groupId, archives: [archive], sites: 2, siteNames: ["site_0", "site_1"], countType: "uint16", timesUs: [0], timeSlots: [0],
     shotsPerTime: [2], shotsSetAside: {}, calibrationDarkShots: 0, calibrationBrightShots: 0, brightness: [[0.5, 4.5]], warnings: [], createdAt,
   });
-  const analysisJobId = newId();
+  const [analysisJobId, studyJobId] = [newId(), newId()];
   const ended = { ...made, progress: 1, notBefore: createdAt, finishedAt: createdAt };
   await database().insert(jobs).values([
     { ...ended, id: ids.jobs, kind: "ingest", payload: { kind: "ingest", runId: ids.runs }, state: "done" },
     { ...ended, id: analysisJobId, kind: "analysis", payload: { kind: "analysis", analysisId: ids.analyses, runId: ids.runs }, state: "cancelled" },
+    { ...ended, id: studyJobId, kind: "study", payload: { kind: "study", studyId: ids.studies, runId: ids.runs }, state: "cancelled" },
   ]);
   await database().insert(detections).values({ ...made, id: ids.detections, runVersion: 1, number: 1, method: "fixed", sites: [0, 1].map(preparedSite) });
   await database().insert(analyses).values({ ...made, id: ids.analyses, runVersion: 1, detectionId: ids.detections, number: 1, jobId: analysisJobId, ...preparedAnalysis(ids.detections) });
+  await database().insert(frontStudies).values({ groupId, createdBy, createdAt, id: ids.studies, analysisId: ids.analyses, kind: "sweep", parameters: { kind: "sweep" }, jobId: studyJobId });
   await database().insert(tokens).values({
     id: ids.tokens, groupId, userId: createdBy, name: "Prepared", scopes: ["read"], secretHash: sha256Of(ids.tokens), hint: "sl_prepa", createdAt,
     expiresAt: new Date(createdAt.getTime() + 3600_000),

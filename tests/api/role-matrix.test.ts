@@ -73,7 +73,7 @@ function credentialsFor(endpoint: Endpoint, member: SignedInMember): Promise<Cre
 
 const named = (endpoints: Endpoint[]) => endpoints.map((endpoint) => ({ name: `${endpoint.method} ${endpoint.path}`, endpoint }));
 
-const sameIdFor = (id: string): PreparedIds => ({ runs: id, archives: id, jobs: id, detections: id, analyses: id, tokens: id });
+const sameIdFor = (id: string): PreparedIds => ({ runs: id, archives: id, jobs: id, detections: id, analyses: id, studies: id, tokens: id });
 
 describe.each(named(ENDPOINTS))("$name", ({ endpoint }) => {
   it("asks who it is", async () => {

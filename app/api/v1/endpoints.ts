@@ -6,6 +6,7 @@ import { healthEndpoint } from "@/lib/health/health-endpoint";
 import type { Endpoint } from "@/lib/http/endpoint";
 import { openapiEndpoint } from "@/lib/http/openapi-endpoint";
 import { cancelJobEndpoint, getJobEndpoint, jobEventsEndpoint, listRunJobsEndpoint } from "@/lib/jobs/job-endpoints";
+import * as studies from "@/lib/studies/study-endpoints";
 import { brightnessEndpoint, createRunEndpoint, deleteRunEndpoint, getRunEndpoint, histogramsEndpoint, listRunsEndpoint, updateRunEndpoint } from "@/lib/runs/run-endpoints";
 
 /** Every call of the HTTP API. A route that is missing here, or the other way round, fails the suite. */
@@ -23,6 +24,7 @@ export const ENDPOINTS: Endpoint[] = [
   ...[detections.createDetectionEndpoint, detections.listDetectionsEndpoint, detections.getDetectionEndpoint],
   ...[analyses.createAnalysisEndpoint, analyses.listAnalysesEndpoint, analyses.getAnalysisEndpoint],
   ...[analyses.correlatorsEndpoint, analyses.tracesEndpoint, analyses.frontEndpoint, analyses.figureEndpoint],
+  ...Object.values(studies),
   getJobEndpoint,
   cancelJobEndpoint,
   jobEventsEndpoint,

@@ -25,6 +25,7 @@ const EXPECTED: [Action, Role[], TokenScope, boolean][] = [
   ["detection.create", ["analyst", "owner"], "analyse", true],
   ["analysis.read", ["reader", "contributor", "analyst", "owner"], "read", true],
   ["analysis.create", ["analyst", "owner"], "analyse", true],
+  ["study.create", ["analyst", "owner"], "analyse", true],
 ];
 
 describe("the policy", () => {
