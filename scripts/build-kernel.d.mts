@@ -1,2 +1,2 @@
-/** Returns the text of kernel-bytes.generated.ts as the kernel source compiles now. */
-export function kernelModule(): Promise<string>;
+/** Returns the text of a room's kernel-bytes.generated.ts as its kernel source compiles now. */
+export function kernelModule(room: string): Promise<string>;

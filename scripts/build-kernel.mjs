@@ -1,5 +1,5 @@
 /**
- * `npm run kernel`: compiles the bootstrap kernel from AssemblyScript and writes its bytes as a module, so that it loads
+ * `npm run kernel`: compiles the kernels from AssemblyScript and writes their bytes as modules, so that they load
  * synchronously in Node, in worker threads and in browsers alike.
  */
 import { readFile, writeFile } from "node:fs/promises";
@@ -7,14 +7,14 @@ import { fileURLToPath } from "node:url";
 import asc from "assemblyscript/asc";
 
 const root = fileURLToPath(new URL("..", import.meta.url));
-const source = "lib/science/correlators/kernel/index.ts";
-const target = "lib/science/correlators/kernel-bytes.generated.ts";
+/** Each room's kernel/index.ts becomes its kernel-bytes.generated.ts. */
+const rooms = ["lib/science/correlators", "lib/science/theory"];
 const options = ["-O3", "--noAssert", "--runtime", "stub", "--enable", "simd"];
 
-/** Returns the text of the generated module. Throws with the compiler's words when the source does not compile. */
-export async function kernelModule() {
+/** Returns the text of a room's generated module. Throws with the compiler's words when the source does not compile. */
+export async function kernelModule(room) {
   let wasm = null;
-  const { error, stderr } = await asc.main([source, "--baseDir", root, "--outFile", "kernel.wasm", ...options], {
+  const { error, stderr } = await asc.main([`${room}/kernel/index.ts`, "--baseDir", root, "--outFile", "kernel.wasm", ...options], {
     readFile: (name, base) => readFile(`${base}/${name}`, "utf8").catch(() => null),
     writeFile: (name, contents) => {
       if (name === "kernel.wasm") wasm = contents;
@@ -26,7 +26,9 @@ export async function kernelModule() {
 }
 
 if (process.argv[1] === fileURLToPath(import.meta.url)) {
-  const text = await kernelModule();
-  await writeFile(`${root}/${target}`, text);
-  console.log(`${target}: ${text.length} characters`);
+  for (const room of rooms) {
+    const text = await kernelModule(room);
+    await writeFile(`${root}/${room}/kernel-bytes.generated.ts`, text);
+    console.log(`${room}/kernel-bytes.generated.ts: ${text.length} characters`);
+  }
 }

@@ -1,11 +1,14 @@
+import { fermionKernel, type FermionKernel } from "@/lib/science/theory/fermion-kernel";
 import type { DeterminantLaw, MajoranaLaw } from "@/lib/science/theory/spin-law";
 
 /**
  * A state of free fermions while its sites are read one after another. Level `site` holds the state given the outcomes of
  * all sites before; `condition` writes level `site + 1`. Only a window of sites is kept: reading a site changes nothing
- * beyond the correlation range, which outcomes do not widen.
+ * beyond the correlation range, which outcomes do not widen. One state lives at a time, in the thread's kernel.
  */
 export interface ConditionalState {
+  /** Chances within this of 0 or 1 are those up to rounding. */
+  rounding: number;
   /** The chance that `site` is up, given the outcomes before. */
   chanceUp(site: number): number;
   condition(site: number, up: boolean): void;
@@ -13,27 +16,24 @@ export interface ConditionalState {
 
 /** Elements below this are taken as zero: it moves a correlator by 4e-10 at most, and halves the window ahead of the front. */
 const NEGLIGIBLE = 1e-5;
+const DOUBLE_ROUNDING = 1e-10;
+/** In float32 a chance is good to about 1e-6, far below what any number of shots can tell. */
+const SINGLE_ROUNDING = 1e-5;
 
 /** Returns the conditional state of fermions with a projection: K → K ∓ k kᵀ/P (Hough, Krishnapur, Peres and Virág 2006). */
 export function conditionalDeterminant({ sites, projection }: DeterminantLaw): ConditionalState {
   const width = windowOf(sites, (i, j) => projection[i * sites + j]);
-  const levels = levelsOf(sites, width, 1);
-  const column = new Float64Array(width);
-  fillWindow(levels[0], width, Math.min(width, sites), (a, b) => projection[a * sites + b]);
+  const { kernel, memory, levels } = openWindows(sites, width, 1, Float64Array, projection);
+  const bytes = memory.BYTES_PER_ELEMENT;
   return {
-    chanceUp: (site) => levels[site][0],
+    rounding: DOUBLE_ROUNDING,
+    chanceUp: (site) => memory[levels[site]],
     condition(site, up) {
       const [from, to] = [levels[site], levels[site + 1]];
       const held = Math.min(width, sites - site);
-      const factor = up ? -1 / from[0] : 1 / (1 - from[0]);
-      for (let a = 0; a < held; a++) column[a] = from[a * width];
-      for (let a = 1; a < held; a++) {
-        const scaled = factor * column[a];
-        const source = a * width;
-        const target = source - width - 1;
-        for (let b = 1; b <= a; b++) to[target + b] = from[source + b] + scaled * column[b];
-      }
-      if (held < sites - site) copyRow(to, width, held - 1, (b) => projection[(site + held) * sites + site + 1 + b]);
+      const chance = memory[from];
+      kernel.conditionDeterminant(from * bytes, to * bytes, 0, width, held, up ? -1 / chance : 1 / (1 - chance));
+      if (held < sites - site) copyRow(memory, to + (held - 1) * width, projection, (site + held) * sites + site + 1, held);
     },
   };
 }
@@ -46,28 +46,57 @@ export function conditionalMajorana({ sites, covariance }: MajoranaLaw): Conditi
   const size = 2 * sites;
   const reach = windowOf(sites, (i, j) => largestOfBlock(covariance, size, i, j));
   const width = 2 * reach;
-  const levels = levelsOf(sites, reach, 4);
-  const [first, second] = [new Float64Array(width), new Float64Array(width)];
-  fillWindow(levels[0], width, Math.min(width, size), (a, b) => covariance[a * size + b]);
+  const { kernel, memory, levels } = openWindows(sites, reach, 2, Float32Array, covariance);
+  const bytes = memory.BYTES_PER_ELEMENT;
   return {
-    chanceUp: (site) => (1 + levels[site][width]) / 2,
+    rounding: SINGLE_ROUNDING,
+    chanceUp: (site) => (1 + memory[levels[site] + width]) / 2,
     condition(site, up) {
       const [from, to] = [levels[site], levels[site + 1]];
       const held = Math.min(width, size - 2 * site);
-      const factor = up ? 1 / (1 + from[width]) : -1 / (1 - from[width]);
-      for (let c = 2; c < held; c++) [first[c], second[c]] = [from[c * width], from[c * width + 1]];
-      for (let c = 2; c < held; c++) {
-        const [u, v] = [factor * first[c], factor * second[c]];
-        const source = c * width;
-        const target = source - 2 * width - 2;
-        for (let d = 2; d < c; d++) to[target + d] = from[source + d] + u * second[d] - v * first[d];
-      }
+      const mean = memory[from + width];
+      kernel.conditionMajorana(from * bytes, to * bytes, 0, width * bytes, width, held, up ? 1 / (1 + mean) : -1 / (1 - mean));
       if (held === size - 2 * site) return;
-      const next = 2 * site + held;
-      copyRow(to, width, held - 2, (b) => covariance[next * size + 2 * site + 2 + b]);
-      copyRow(to, width, held - 1, (b) => covariance[(next + 1) * size + 2 * site + 2 + b]);
+      const source = (2 * site + held) * size + 2 * site + 2;
+      copyRow(memory, to + (held - 2) * width, covariance, source, held - 1);
+      copyRow(memory, to + (held - 1) * width, covariance, source + size, held);
     },
   };
+}
+
+interface Windows<Elements> {
+  kernel: FermionKernel;
+  /** The kernel's memory; its first 2 · width elements are room for two columns. */
+  memory: Elements;
+  /** Where every site's window begins, in elements. */
+  levels: number[];
+}
+
+/** Makes room for all levels, `perSite` operators a site, and fills the first from the whole matrix. */
+function openWindows<Elements extends Float32Array | Float64Array>(
+  sites: number,
+  reach: number,
+  perSite: number,
+  Elements: { new (buffer: ArrayBufferLike): Elements; BYTES_PER_ELEMENT: number },
+  matrix: Float64Array,
+): Windows<Elements> {
+  const width = reach * perSite;
+  const margin = 2 * width + 4;
+  const levels: number[] = [];
+  let end = margin;
+  for (let site = 0; site < sites; site++) {
+    levels.push(end);
+    end += Math.min(reach, sites - site) * perSite * width;
+  }
+  const kernel = fermionKernel((end + margin) * Elements.BYTES_PER_ELEMENT);
+  const memory = new Elements(kernel.memory.buffer);
+  const size = sites * perSite;
+  for (let a = 0; a < Math.min(width, size); a++) copyRow(memory, levels[0] + a * width, matrix, a * size, a + 1);
+  return { kernel, memory, levels };
+}
+
+function copyRow(to: Float32Array | Float64Array, at: number, from: Float64Array, start: number, count: number): void {
+  for (let b = 0; b < count; b++) to[at + b] = from[start + b];
 }
 
 function largestOfBlock(covariance: Float64Array, size: number, i: number, j: number): number {
@@ -82,17 +111,4 @@ function windowOf(sites: number, element: (i: number, j: number) => number): num
     for (let j = i + range + 1; j < sites; j++) if (Math.abs(element(i, j)) > NEGLIGIBLE) range = j - i;
   }
   return range + 1;
-}
-
-function levelsOf(sites: number, reach: number, perPair: number): Float64Array[] {
-  return Array.from({ length: sites }, (_, site) => new Float64Array(Math.min(reach, sites - site) * reach * perPair));
-}
-
-/** Fills the lower triangle, diagonal included. */
-function fillWindow(level: Float64Array, width: number, held: number, element: (a: number, b: number) => number): void {
-  for (let a = 0; a < held; a++) copyRow(level, width, a, (b) => element(a, b));
-}
-
-function copyRow(level: Float64Array, width: number, row: number, element: (b: number) => number): void {
-  for (let b = 0; b <= row; b++) level[row * width + b] = element(b);
 }

@@ -5,9 +5,6 @@ import { fillWithNormals } from "@/lib/science/stats/ziggurat";
 import { conditionalDeterminant, conditionalMajorana, type ConditionalState } from "@/lib/science/theory/conditional-fermions";
 import type { GaussianLaw, SpinLaw } from "@/lib/science/theory/spin-law";
 
-/** Chances closer than this to 0 or 1 are rounding. */
-const CERTAIN = 1e-12;
-
 /**
  * Returns independent shots of a law. Fermions are sampled exactly by the chain rule, site after site, for all shots
  * with the same outcomes so far at once, so equal shots come together and their order carries no meaning.
@@ -27,7 +24,7 @@ function emptySpins(sites: number, shots: number): PackedSpins {
 /** Draws how many of the shots `start … start + count − 1` are up at `site`, puts those first, and goes on in both parts. */
 function splitBySite(spins: PackedSpins, state: ConditionalState, stream: RandomStream, site: number, start: number, count: number): void {
   const chance = state.chanceUp(site);
-  const up = drawUps(stream, count, chance);
+  const up = drawUps(stream, count, chance, state.rounding);
   raiseBits(spins, site, start, start + up);
   if (site + 1 === spins.sites) return;
   if (up > 0) {
@@ -40,9 +37,9 @@ function splitBySite(spins: PackedSpins, state: ConditionalState, stream: Random
   }
 }
 
-function drawUps(stream: RandomStream, count: number, chance: number): number {
-  if (chance < CERTAIN) return 0;
-  if (chance > 1 - CERTAIN) return count;
+function drawUps(stream: RandomStream, count: number, chance: number, rounding: number): number {
+  if (chance < rounding) return 0;
+  if (chance > 1 - rounding) return count;
   if (count === 1) return stream.nextUniform() < chance ? 1 : 0;
   return drawBinomial(stream, count, chance);
 }

@@ -11,7 +11,7 @@ import { isStudyRefusal } from "@/lib/science/studies/study-refusal";
 import { measureCone, type Cone } from "../front/simulated-cone";
 
 const SITES = 8;
-const SHOTS = 4000;
+const SHOTS = 2000;
 const TIMES = 30;
 const chain = { x: Float64Array.from({ length: SITES }, (_, i) => i), y: null };
 
@@ -20,7 +20,7 @@ function coneOf(exponent: number, amplitude = 0.25): Cone {
     distances: [1, 2, 3, 4, 5, 6, 7],
     times_us: Array.from({ length: TIMES }, (_, k) => 20 + 25 * k),
     front_us: (distance) => 100 * distance ** exponent,
-    rise_us: 150,
+    rise_us: 250,
     amplitude,
     noise: 0.004,
   };
@@ -80,14 +80,14 @@ describe("the self-test of a well-behaved run", () => {
 
   it("finds the reported error near the scatter, and little bias", () => {
     expect((result.gamma.meanError ?? NaN) / (result.gamma.scatter ?? NaN)).toBeGreaterThan(0.8);
-    expect((result.gamma.meanError ?? NaN) / (result.gamma.scatter ?? NaN)).toBeLessThan(1.4);
+    expect((result.gamma.meanError ?? NaN) / (result.gamma.scatter ?? NaN)).toBeLessThan(1.5);
     expect(Math.abs(result.gamma.biasInErrors ?? NaN)).toBeLessThan(0.5);
     expect(result.failedFits).toBe(0);
   });
 
   it("says so in one sentence", () => {
     expect(result.sentence).toMatch(
-      /^In 200 simulated runs of this size the 95\u202f% interval of γ held the truth in 1\d\d \(\d\d–\d\d\u202f%\); bias \u2212?0\.\d+ of error 0\.\d+\.$/,
+      /^In 200 simulated runs of this size the 95\u202f% interval of γ held the truth in 1\d\d \(\d\d–\d{2,3}\u202f%\); bias \u2212?0\.\d+ of error 0\.\d+\.$/,
     );
   });
 
@@ -101,13 +101,13 @@ describe("the truth of a self-test", () => {
     const input = inputOf(coneOf(1), { traces: planReferenceTraces(chain, 0) });
     const wanted = wantedCorrelators(input, { a: 0.01, gamma: 1 });
     expect(wanted).toHaveLength(TIMES);
-    // At 420 µs the front is at 4.2 sites: pairs at distance 6 and 7 show nothing yet, those at distance 1 are past their maximum.
+    // At 420 µs the front is at 4.2 sites: pairs at distance 6 and 7 show nothing yet, those at distance 1 are near theirs.
     expect(wanted[16][5]).toBe(0);
     expect(wanted[16][6]).toBe(0);
     expect(wanted[16][0]).toBeGreaterThan(0.1);
     // Sites 3 and 4 are a pair of no trace: their signal is that of distance 1.
     const pairOf34 = 7 + 6 + 5;
-    expect(wanted[16][pairOf34]).toBeCloseTo(wanted[11][0], 12);
+    expect(wanted[16][pairOf34]).toBeCloseTo(wanted[16][0], 12);
   });
 
   it("that no spins can have is moved, and the result says so", () => {
