@@ -8,7 +8,6 @@ const LEVEL = 0.025;
 /** With fewer fitted repeats than this p cannot reach the level. */
 const LEAST_FITTED = Math.ceil(1 / LEVEL) - 1;
 const MANY_WITHOUT_FIT = 0.05;
-const MUCH_CHANGED = 0.005;
 const MODELS = {
   xy: "the nearest-neighbour XY chain from the Néel state",
   ising: "the nearest-neighbour Ising chain in a transverse field h = J from all spins up",
@@ -27,7 +26,6 @@ export function judgeNullFront(plan: NullFrontPlan, repeats: readonly NullFrontR
   const result = {
     model: plan.model,
     coupling: plan.coupling,
-    sampling: plan.surrogateChange === null ? ("exact" as const) : ("surrogate" as const),
     repeats: repeats.length,
     fitted: numbers.length,
     shareWithoutFit: share(repeats.length - numbers.length),
@@ -76,13 +74,7 @@ function warningsOf(plan: NullFrontPlan, repeats: readonly NullFrontRepeat[], { 
   if (points !== null && points < plan.observedPoints) {
     warnings.push(`The analysis fits ${plan.observedPoints} points, a simulated run mostly ${points}: the model's signal is too weak at the other distances.`);
   }
-  if (plan.surrogateChange !== null) warnings.push(surrogateWarning(plan.surrogateChange));
   return warnings;
-}
-
-function surrogateWarning(change: number): string {
-  const opening = "So many sites are simulated with the model's means and pair correlations only, not with its correlations of three and more spins";
-  return change > MUCH_CHANGED ? `${opening}; pair correlations had to be moved by up to ${fixed(change, 3)}.` : `${opening}.`;
 }
 
 function percent(share: number): string {

@@ -41,8 +41,6 @@ export interface NoiseFreeFront {
 export interface NullFrontResult {
   model: NearestNeighbourModel;
   coupling: NullCoupling;
-  /** `exact`: shots drawn from the model's state. `surrogate`: only its means and pair correlations are kept. */
-  sampling: "exact" | "surrogate";
   repeats: number;
   /** Repeats with a power-law fit: only these enter the quantiles and the p-value. */
   fitted: number;

@@ -6,7 +6,6 @@ import { couplingOf } from "@/lib/science/studies/match-coupling";
 import type { NullFrontInput } from "@/lib/science/studies/null-front-input";
 import type { NoiseFreeFront, NullCoupling, NullFrontRepeat } from "@/lib/science/studies/null-front-result";
 import { analyseSimulatedRun, readNoiseFree, type SimulatedRun } from "@/lib/science/studies/simulated-run";
-import { gaussianLawOf } from "@/lib/science/theory/gaussian-law";
 import { nearestNeighbourLaws, nearestNeighbourMoments, type NearestNeighbourModel } from "@/lib/science/theory/nearest-neighbour";
 
 /** Everything the repeats of a null front need; can be sent to a thread as it is. */
@@ -17,19 +16,16 @@ export interface NullFrontPlan {
   noiseFree: NoiseFreeFront;
   /** Points the studied analysis fitted. */
   observedPoints: number;
-  /** Largest change of a correlator that the surrogate made; null when sampling is exact. */
-  surrogateChange: number | null;
 }
 
-/** Above this the exact sampling of one repeat takes minutes. */
-const MOST_SITES_EXACT = 96;
-const LEAST_SITES = 3;
-const MOST_SITES = 256;
+const LEAST_SITES = 4;
+/** Above this a repeat, whose shots are drawn exactly, takes minutes. */
+const MOST_SITES = 128;
 
 /**
  * Returns the plan of a null front: the exact nearest-neighbour chain at the run's times, shots, readout errors and
  * traces, and what the extractor reads from it without noise. Times in µs, couplings J/2π in hertz. A refusal for
- * anything but a chain of 3 to 256 sites, for sites beyond readout correction, and where J can neither be had nor matched.
+ * anything but a chain of 4 to 128 sites, for sites beyond readout correction, and where J can neither be had nor matched.
  */
 export function planNullFront(input: NullFrontInput): NullFrontPlan | StudyRefusal {
   const refusal = whyNoNullFront(input);
@@ -38,12 +34,9 @@ export function planNullFront(input: NullFrontInput): NullFrontPlan | StudyRefus
   if (isStudyRefusal(coupling)) return coupling;
   const { model, positions, observedPoints, times_us } = input;
   const sites = positions.x.length;
-  const exact = nearestNeighbourLaws(model, sites, coupling.j_hz, times_us);
-  const moments = exact.map(nearestNeighbourMoments);
-  const surrogates = sites > MOST_SITES_EXACT ? moments.map(gaussianLawOf) : null;
-  const run: SimulatedRun = { ...analysisOf(input), laws: surrogates?.map(({ law }) => law) ?? exact, purpose: RANDOM_PURPOSES.nullFront };
-  const correlators = surrogates?.map(({ correlator }) => correlator) ?? moments.map(({ correlator }) => correlator);
-  const { front } = readNoiseFree(run, correlators);
+  const laws = nearestNeighbourLaws(model, sites, coupling.j_hz, times_us);
+  const run: SimulatedRun = { ...analysisOf(input), laws, purpose: RANDOM_PURPOSES.nullFront };
+  const { front } = readNoiseFree(run, laws.map((law) => nearestNeighbourMoments(law).correlator));
   return {
     model,
     coupling,
@@ -53,7 +46,6 @@ export function planNullFront(input: NullFrontInput): NullFrontPlan | StudyRefus
       points: front.points.map(({ label, distance, time_us, fitted }) => ({ label, distance, time_us, fitted })),
     },
     observedPoints: observedPoints.filter(({ fitted }) => fitted).length,
-    surrogateChange: surrogates === null ? null : Math.max(...surrogates.map(({ largestChange }) => largestChange)),
   };
 }
 

@@ -17,7 +17,7 @@ export interface MajoranaLaw {
   covariance: Float64Array;
 }
 
-/** A surrogate: spin i is up where a correlated normal variable lies below its threshold. */
+/** Spins of given means and pair correlations: spin i is up where a correlated normal variable lies below its threshold. */
 export interface GaussianLaw {
   kind: "gaussian";
   sites: number;
