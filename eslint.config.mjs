@@ -6,7 +6,7 @@ import { importDirection } from "./scripts/eslint/import-direction.mjs";
 const DEFAULT_EXPORTS = ["app/**/{page,layout,loading,error,not-found,global-error}.tsx", "*.config.{ts,mjs,mts}", "next.config.mjs", "scripts/closing-line-reporter.mjs"];
 
 export default defineConfig([
-  globalIgnores([".next/", ".data/", "node_modules/", "coverage/", "next-env.d.ts", "migrations/", "lib/science/correlators/kernel/", "lib/science/theory/kernel/", "**/*.generated.ts"]),
+  globalIgnores([".next/", ".data/", "node_modules/", "coverage/", "next-env.d.ts", "migrations/", "lib/science/*/kernel/", "**/*.generated.ts"]),
   ...nextCoreWebVitals,
   ...nextTypeScript,
   {

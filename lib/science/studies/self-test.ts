@@ -44,7 +44,9 @@ export function planSelfTest(input: SelfTestInput): SelfTestPlan | StudyRefusal 
     const mean = input.means.subarray(k * sites, (k + 1) * sites).map(withinMargin);
     return gaussianLawOf({ mean, correlator });
   });
-  const run: SimulatedRun = { ...analysisOf(input), laws: surrogates.map((surrogate) => surrogate.law), purpose: RANDOM_PURPOSES.selfTest };
+  // Without correction the run's means and traces are those of the spins as read: their flips are in them already.
+  const readoutErrors = input.readoutCorrected ? input.readoutErrors : null;
+  const run: SimulatedRun = { ...analysisOf(input), readoutErrors, laws: surrogates.map((surrogate) => surrogate.law), purpose: RANDOM_PURPOSES.selfTest };
   const { front } = readNoiseFree(run, surrogates.map(({ correlator }) => correlator));
   const changes = surrogates.map(({ largestChange }) => largestChange);
   return {

@@ -124,6 +124,14 @@ describe("the truth of a self-test", () => {
 });
 
 describe("a self-test", () => {
+  it("simulates the spins as read when the analysis does not correct its readout", () => {
+    const errors = { falseBright: new Float64Array(SITES).fill(0.2), falseDark: new Float64Array(SITES).fill(0.2) };
+    const plan = planOf(inputOf(coneOf(0.8), { readoutErrors: errors, readoutCorrected: false }));
+    const withoutErrors = planOf(inputOf(coneOf(0.8), { readoutErrors: null, readoutCorrected: false }));
+    expect(selfTestRepeat(plan, 0)).toEqual(selfTestRepeat(withoutErrors, 0));
+  });
+
+
   it("is refused without a fitted power law", () => {
     const input = inputOf(coneOf(0.8));
     expect(planSelfTest({ ...input, observedFront: { ...input.observedFront, powerLaw: { reason: "too few points" } } })).toMatchObject({ where: "analysis" });
