@@ -1,5 +1,5 @@
 import "server-only";
-import { and, desc, eq, inArray } from "drizzle-orm";
+import { and, desc, eq, inArray, sql } from "drizzle-orm";
 import { database } from "@/db/connection";
 import { analyses } from "@/db/schema/analyses";
 import { frontStudies } from "@/db/schema/front-studies";
@@ -12,9 +12,20 @@ import { isProblem, problem, type Problem } from "@/lib/problem";
 /** A study with its job and who asked for it. */
 export type StudyRow = Awaited<ReturnType<typeof selectStudies>>[number];
 
+/** Without the result, of which lists show the sentence only. */
+const head = {
+  id: frontStudies.id,
+  analysisId: frontStudies.analysisId,
+  kind: frontStudies.kind,
+  parameters: frontStudies.parameters,
+  createdAt: frontStudies.createdAt,
+  finishedAt: frontStudies.finishedAt,
+};
+const sentence = sql<string | null>`json_value(${frontStudies.result}, '$.sentence')`;
+
 function selectStudies(actor: Actor, condition: ReturnType<typeof eq>, limit: number) {
   return database()
-    .select({ study: frontStudies, job: jobs, runId: analyses.runId, createdByName: users.name })
+    .select({ study: head, sentence, job: jobs, runId: analyses.runId, createdByName: users.name })
     .from(frontStudies)
     .innerJoin(analyses, eq(analyses.id, frontStudies.analysisId))
     .innerJoin(jobs, eq(jobs.id, frontStudies.jobId))

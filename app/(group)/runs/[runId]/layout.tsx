@@ -11,7 +11,7 @@ export default async function RunLayout({ children, params }: { children: ReactN
     <>
       <RunHead
         run={data.run}
-        jobs={data.active.map(({ id, kind }) => ({ id, kind }))}
+        jobs={data.active.filter(({ kind }) => kind !== "study").map(({ id, kind }) => ({ id, kind }))}
         mayCancel={may(data.actor, "job.cancel")}
         mayDelete={may(data.actor, "run.delete")}
         dependents={{ archives: data.run.archives.length, detections: data.detections.length, analyses: data.analyses.length }}
