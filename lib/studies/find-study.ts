@@ -58,9 +58,3 @@ export async function findStudyResults(actor: Actor, studyIds: string[]): Promis
     .where(and(eq(frontStudies.groupId, actor.groupId), inArray(frontStudies.id, studyIds)));
   return new Map(rows.flatMap(({ id, result }) => (result === null ? [] : [[id, result] as const])));
 }
-
-/** For `serve`: the Problem that a path's analysis is not there for this member. */
-export async function absentAnalysis({ actor, params }: { actor: Actor; params: { analysisId: string } }): Promise<Problem | null> {
-  const row = await findAnalysis(actor, params.analysisId);
-  return isProblem(row) ? row : null;
-}

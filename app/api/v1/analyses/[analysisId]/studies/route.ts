@@ -2,7 +2,7 @@ import { accepted, json } from "@/lib/http/answers";
 import { serve } from "@/lib/http/serve";
 import { isProblem } from "@/lib/problem";
 import { createStudy } from "@/lib/studies/create-study";
-import { absentAnalysis } from "@/lib/studies/find-study";
+import { absentAnalysis } from "@/lib/studies/find-subject";
 import { listStudies } from "@/lib/studies/list-studies";
 import { createStudyEndpoint, listStudiesEndpoint } from "@/lib/studies/study-endpoints";
 
