@@ -1,4 +1,5 @@
 import { describe, expect, it } from "vitest";
+import { listPairs } from "@/lib/science/correlators/pairs";
 import { planDistanceTraces, planReferenceTraces } from "@/lib/science/correlators/trace-plan";
 import { DEFAULT_FRONT_FIT_OPTIONS, DEFAULT_FRONT_RULE } from "@/lib/science/front/front-rule";
 import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
@@ -9,7 +10,10 @@ import type { NullFrontInput } from "@/lib/science/studies/null-front-input";
 import type { NullFrontRepeat } from "@/lib/science/studies/null-front-result";
 import { analyseSimulatedRun } from "@/lib/science/studies/simulated-run";
 import { isStudyRefusal } from "@/lib/science/studies/study-refusal";
+import { evolve, xyHamiltonian } from "@/lib/science/theory/chebyshev-evolution";
+import { powerLawCouplings } from "@/lib/science/theory/couplings";
 import { gaussianLawOf } from "@/lib/science/theory/gaussian-law";
+import { allDown, connectedSpins, meanSpin, probabilities } from "@/lib/science/theory/spin-state";
 
 const SITES = 8;
 const chain = { x: Float64Array.from({ length: SITES }, (_, i) => i), y: null };
@@ -62,20 +66,19 @@ describe.each([
   const plan = planOf({ model, shotsPerTime });
   const repeats = repeatsOf(plan, 250);
 
+  // Another seed gives other draws of the same model.
+  const data = repeatsOf(planOf({ model, shotsPerTime, seed: 99 }), 250);
+  const pValues = data.flatMap(({ gamma }) => judgeNullFront(plan, repeats, gamma).pValue ?? []);
+
   it("has uniform p-values for data that are themselves null", () => {
-    // Other seed, so other draws of the same model; the law of p is the same for any continuous γ.
-    const data = repeatsOf(planOf({ model, shotsPerTime, seed: 99 }), 250);
-    const pValues = data.flatMap(({ gamma }) => judgeNullFront(plan, repeats, gamma).pValue ?? []);
     expect(pValues.length).toBeGreaterThan(240);
     // 99.9 % point of the two-sample Kolmogorov–Smirnov statistic, 1.95 √(2/250).
     expect(distanceFromUniform(pValues)).toBeLessThan(1.95 * Math.sqrt(2 / 250) + 1 / 250);
   });
 
   it("is seldom called faster than itself", () => {
-    const data = repeatsOf(planOf({ model, shotsPerTime, seed: 77 }), 250);
-    const faster = data.filter(({ gamma }) => judgeNullFront(plan, repeats, gamma).fasterThanNearestNeighbour).length;
-    // 2.5 % of 250 is 6.25 ± 2.5; the threshold's own scatter doubles the variance: four deviations.
-    expect(faster).toBeLessThanOrEqual(6.25 + 4 * 3.5);
+    // 2.5 % of 250 is 6.25 ± 2.5, and the threshold's own scatter doubles the variance: four deviations.
+    expect(pValues.filter((p) => p <= 0.025).length).toBeLessThanOrEqual(6.25 + 4 * 3.5);
   });
 
   it("scatters about what the extractor reads without noise", () => {
@@ -112,6 +115,29 @@ describe("an accelerating front held against the null front", () => {
     expect(judged.fasterThanNearestNeighbour).toBe(true);
     expect(judged.pValue).toBeCloseTo(1 / 61, 12);
     expect(judged.sentence).toMatch(/^Faster than a nearest-neighbour cone: γ = 0\.\d\d, and 0 of 60 simulated runs/);
+  });
+});
+
+describe("the long-range XY quench, J_ij = J₀/|i − j|, held against the null front of the same largest coupling", () => {
+  /** J₀t from 0.06 to 1.3. */
+  const couplingTimes = Float64Array.from({ length: 20 }, (_, k) => 0.06 + 0.065 * k);
+  const times = couplingTimes.map((time) => (time / (2 * Math.PI * 1000)) * 1e6);
+  const plan = planOf({ times_us: times, shotsPerTime: new Float64Array(20).fill(1000) });
+  const couplings = powerLawCouplings(SITES, 1, 1);
+  const pairs = listPairs(SITES);
+  const laws = Array.from(couplingTimes, (time) => {
+    const chances = probabilities(evolve(xyHamiltonian(SITES, couplings), allDown(SITES), time));
+    const correlator = Float64Array.from({ length: pairs.length / 2 }, (_, pair) => connectedSpins(chances, pairs[2 * pair], pairs[2 * pair + 1]));
+    return gaussianLawOf({ mean: Float64Array.from({ length: SITES }, (_, i) => meanSpin(chances, i)), correlator }).law;
+  });
+
+  it("is called faster in every one of ten runs of 1000 shots", () => {
+    const repeats = repeatsOf(plan, 120);
+    for (let data = 0; data < 10; data++) {
+      const { front } = analyseSimulatedRun({ ...plan.run, laws, purpose: RANDOM_PURPOSES.simulation }, data);
+      const judged = judgeNullFront(plan, repeats, frontNumbers(front).gamma);
+      expect(judged.fasterThanNearestNeighbour).toBe(true);
+    }
   });
 });
 

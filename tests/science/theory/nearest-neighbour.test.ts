@@ -154,8 +154,7 @@ describe("the quench of the transverse-field Ising chain from all spins up", () 
     [1, 2, 5, 10, 20].forEach((distance, at) => {
       const trace = laws.map((law) => bulkSignal(law, distance));
       const peak = coarse[trace.indexOf(Math.max(...trace))];
-      const nearPeak = Float64Array.from({ length: 49 }, (_, m) => Math.min(end, Math.max(0, peak + (m - 24) / 400)));
-      const level = Math.max(...isingFieldQuench(BULK, 1, field, nearPeak).map((law) => bulkSignal(law, distance))) / 10;
+      const level = maximumNear(peak, end, field, distance) / 10;
       const before = coarse[trace.findIndex((value) => value >= level) - 1];
       expect(Math.abs(crossingAfter(before, level, field, distance) - expected[at])).toBeLessThan(2e-5);
     });
@@ -169,15 +168,30 @@ function bulkSignal(law: MajoranaLaw, distance: number): number {
   return Math.abs(majoranaMoments(law).correlator[pairIndex(BULK, BULK / 2 - Math.ceil(distance / 2), BULK / 2 + Math.floor(distance / 2))]);
 }
 
-/** The level's upcrossing within 0.1 after `before`, by halving. */
+/** The maximum within 0.1 of a time, by a parabola through the best three samples. */
+function maximumNear(time: number, end: number, field: number, distance: number): number {
+  const step = 0.02;
+  const times = Float64Array.from({ length: 11 }, (_, m) => Math.min(end, Math.max(0, time + (m - 5) * step)));
+  const signal = isingFieldQuench(BULK, 1, field, times).map((law) => bulkSignal(law, distance));
+  const best = signal.indexOf(Math.max(...signal));
+  if (best === 0 || best === 10 || times[best + 1] - times[best - 1] < 1.99 * step) return signal[best];
+  const bend = signal[best - 1] - 2 * signal[best] + signal[best + 1];
+  return signal[best] - (signal[best + 1] - signal[best - 1]) ** 2 / (8 * bend);
+}
+
+/** The level's upcrossing within 0.1 after `before`, by false position (Illinois). */
 function crossingAfter(before: number, level: number, field: number, distance: number): number {
+  const excess = (time: number) => bulkSignal(isingFieldQuench(BULK, 1, field, Float64Array.of(time))[0], distance) - level;
   let [low, high] = [before, before + 0.1];
-  while (high - low > 1e-6) {
-    const middle = (low + high) / 2;
-    if (bulkSignal(isingFieldQuench(BULK, 1, field, Float64Array.of(middle))[0], distance) < level) low = middle;
-    else high = middle;
+  let [atLow, atHigh] = [excess(low), excess(high)];
+  for (let step = 0; step < 20; step++) {
+    const middle = high - (atHigh * (high - low)) / (atHigh - atLow);
+    const at = excess(middle);
+    if (Math.abs(at) < 1e-6 * level) return middle;
+    if (at > 0) [high, atHigh, atLow] = [middle, at, atLow / 2];
+    else [low, atLow, atHigh] = [middle, at, atHigh / 2];
   }
-  return low;
+  return (low + high) / 2;
 }
 
 function allUp(sites: number): SpinState {
