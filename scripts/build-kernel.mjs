@@ -8,7 +8,7 @@ import asc from "assemblyscript/asc";
 
 const root = fileURLToPath(new URL("..", import.meta.url));
 /** Each room's kernel/index.ts becomes its kernel-bytes.generated.ts. */
-const rooms = ["lib/science/correlators", "lib/science/theory"];
+const rooms = ["lib/science/correlators", "lib/science/theory", "lib/science/threshold-free"];
 const options = ["-O3", "--noAssert", "--runtime", "stub", "--enable", "simd"];
 
 /** Returns the text of a room's generated module. Throws with the compiler's words when the source does not compile. */

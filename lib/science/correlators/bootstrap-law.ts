@@ -60,8 +60,26 @@ export function pairLaw(outcomes: readonly [number, number, number, number]): Bo
     uw2 += share * u * w * w;
     vw2 += share * v * w * w;
   }
-  const uu = 1 - meanI * meanI;
-  const vv = 1 - meanJ * meanJ;
+  return covarianceLaw({ c, uu: 1 - meanI * meanI, vv: 1 - meanJ * meanJ, uuv, uvv, w2, w3, w4, uw2, vw2 }, shots);
+}
+
+/** Averages over the shots of one pair, with u and v the deviations of the two readings from their means, and w = uv − c. */
+export interface CovarianceMoments {
+  /** Of u v: the plug-in C. */
+  c: number;
+  uu: number;
+  vv: number;
+  uuv: number;
+  uvv: number;
+  w2: number;
+  w3: number;
+  w4: number;
+  uw2: number;
+  vw2: number;
+}
+
+/** Returns the law of the plug-in covariance of M shots drawn with replacement, M ≥ 2, for readings of any kind; see `pairLaw`. */
+export function covarianceLaw({ c, uu, vv, uuv, uvv, w2, w3, w4, uw2, vw2 }: CovarianceMoments, shots: number): BootstrapLaw {
   const products = (w2 + c * c + (shots - 1) * (uu * vv + 2 * c * c)) / shots ** 3 - (c / shots) ** 2;
   const variance = Math.max(0, (w2 * (1 - 2 / shots)) / shots + products);
   const third = (w3 - 6 * uuv * uvv) / shots ** 2;
