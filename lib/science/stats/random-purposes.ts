@@ -11,6 +11,8 @@ export const RANDOM_PURPOSES = {
   simulation: 3,
   /** What completes a bootstrap replicate's byte draws to exactly M shots; index is the time k. */
   bootstrapRepairs: 4,
+  /** The study of the estimates without thresholds; index is the row of its table, replicate the repeat. */
+  thresholdFreeStudy: 5,
   /** Simulated repeats of the nearest-neighbour model; index is the time k, replicate the repeat. */
   nullFront: 6,
   /** Simulated repeats of an analysis; index is the time k, replicate the repeat. */
