@@ -19,7 +19,7 @@ export interface AnalysisParameters {
   front: {
     rule: "fraction-of-max" | "fixed-level" | "noise-multiple";
     level: number;
-    method: "isotonic" | "first";
+    method: "isotonic" | "first" | "last-upcrossing";
     hold: number;
     minSignal: number;
     absolute: boolean;

@@ -21,7 +21,7 @@ const Front = z
   .strictObject({
     rule: z.enum(["fraction-of-max", "fixed-level", "noise-multiple"]).default(DEFAULT_FRONT_RULE.rule),
     level: z.number().positive().max(100).default(DEFAULT_FRONT_RULE.level),
-    method: z.enum(["isotonic", "first"]).default(DEFAULT_FRONT_RULE.method),
+    method: z.enum(["isotonic", "first", "last-upcrossing"]).default(DEFAULT_FRONT_RULE.method),
     hold: z.number().int().min(1).max(100).default(DEFAULT_FRONT_RULE.hold),
     minSignal: z.number().min(0).max(1000).default(DEFAULT_FRONT_RULE.minSignal),
     absolute: z.boolean().default(DEFAULT_FRONT_RULE.absolute),

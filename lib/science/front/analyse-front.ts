@@ -13,6 +13,7 @@ import { replicateCrossings, spreadOfCrossings, type CrossingSpread } from "@/li
 import type { TraceSet } from "@/lib/science/front/trace-set";
 import { velocityOf } from "@/lib/science/front/velocity";
 import { judgeFront } from "@/lib/science/front/verdict";
+import { isStillRising, windowEvidence } from "@/lib/science/front/window-evidence";
 
 /** A front with the replicates behind it. */
 export interface FrontAnalysis {
@@ -65,12 +66,13 @@ function frontOf(traces: TraceSet, rule: FrontRule, options: FrontFitOptions, fo
   const powerLaw = "reason" in attempt ? null : attempt;
   const noPowerLaw = "reason" in attempt ? attempt.reason : "";
   const noLinear: NoFit = { reason: noFit ?? "" };
+  const isInside = crossings.map(({ peakTimeIndex }, j) => !isStillRising(traces, j, peakTimeIndex));
   return {
     points,
     linear: linear?.front ?? noLinear,
     powerLaw: powerLaw?.front ?? { reason: noPowerLaw },
     comparison: compareFits(linear?.front ?? null, powerLaw?.front ?? null),
-    ...judgeFront(powerLaw?.front ?? null, noPowerLaw),
+    ...judgeFront(powerLaw?.front ?? null, noPowerLaw, powerLaw && windowEvidence(fitted, isInside, tau, count, options.powerLawIn)),
     velocity: velocityOf(fitted, tau, count, linear, powerLaw),
     warnings: frontWarnings(points, rule, count, powerLaw?.replicates.fitted ?? null),
     unresolved: points.flatMap(({ label, distance, status }, j) => {

@@ -58,6 +58,21 @@ export function loadSignal(
 }
 
 /**
+ * Loads a trace without gaps into a scratch that already holds the same times and weights; returns whether all values were finite.
+ * The quick way for replicates: only the signal is written.
+ */
+export function reloadSignal(scratch: CrossingScratch, values: Float64Array, offset: number): boolean {
+  const { signal, count } = scratch;
+  let differences = 0;
+  for (let k = 0; k < count; k++) {
+    const value = values[offset + k];
+    differences += value - value;
+    signal[k] = value;
+  }
+  return differences === 0;
+}
+
+/**
  * Orients the loaded signal in place so that its largest |C| is positive (`absolute`: every sample is), and returns
  * the sample of that maximum, the first of equals; −1 when nothing is loaded.
  */
@@ -87,9 +102,8 @@ export function orientSignal(scratch: CrossingScratch, absolute: boolean): numbe
 export function crossingTime_us(scratch: CrossingScratch, peak: number, level: number, rule: FrontRule): number {
   scratch.atStart = false;
   if (peak < 0 || !(scratch.signal[peak] > 0)) return NaN;
-  return rule.method === "isotonic"
-    ? isotonicCrossing_us(scratch, peak, level)
-    : firstCrossing_us(scratch, level, rule.hold);
+  if (rule.method === "isotonic") return isotonicCrossing_us(scratch, peak, level);
+  return rule.method === "first" ? firstCrossing_us(scratch, level, rule.hold) : lastUpcrossing_us(scratch, peak, level);
 }
 
 /**
@@ -149,6 +163,17 @@ function firstCrossing_us(scratch: CrossingScratch, level: number, hold: number)
     return between(time_us[first - 1], signal[first - 1], time_us[first], signal[first], level);
   }
   return NaN;
+}
+
+/** The last upward crossing of the level before the maximum; at the start when the signal is never below the level before it. */
+function lastUpcrossing_us(scratch: CrossingScratch, peak: number, level: number): number {
+  const { signal, time_us } = scratch;
+  if (signal[peak] < level) return NaN;
+  for (let k = peak - 1; k >= 0; k--) {
+    if (signal[k] < level) return between(time_us[k], signal[k], time_us[k + 1], signal[k + 1], level);
+  }
+  scratch.atStart = true;
+  return time_us[0];
 }
 
 function between(leftTime_us: number, left: number, rightTime_us: number, right: number, level: number): number {

@@ -1,8 +1,11 @@
 /** How the level of a trace is set: a share of its largest signal, one level for all, or a multiple of its noise. */
 export type LevelRule = "fraction-of-max" | "fixed-level" | "noise-multiple";
 
-/** How a crossing is read off: centred isotonic regression before the maximum, or the first samples at the level. */
-export type CrossingMethod = "isotonic" | "first";
+/**
+ * How a crossing is read off: centred isotonic regression before the maximum, the first samples at the level, or the last upward crossing
+ * of the level before the maximum.
+ */
+export type CrossingMethod = "isotonic" | "first" | "last-upcrossing";
 
 /** The definition of the front, recorded with every analysis. */
 export interface FrontRule {

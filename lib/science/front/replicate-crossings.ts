@@ -1,4 +1,4 @@
-import { createCrossingScratch, crossingTime_us, loadSignal, orientSignal } from "@/lib/science/front/crossing-kernel";
+import { createCrossingScratch, crossingTime_us, loadSignal, orientSignal, reloadSignal } from "@/lib/science/front/crossing-kernel";
 import type { FrontRule } from "@/lib/science/front/front-rule";
 import type { TraceSet } from "@/lib/science/front/trace-set";
 import { summariseReplicates } from "@/lib/science/front/replicate-summary";
@@ -25,7 +25,11 @@ export function replicateCrossings(traces: TraceSet, rule: FrontRule, levels: Fl
   const timeCount = times_us.length;
   const traceCount = traces.labels.length;
   const tau = new Float64Array(traceCount * replicateCount);
-  const scratch = createCrossingScratch(timeCount);
+  const whole = createCrossingScratch(timeCount);
+  const partial = createCrossingScratch(timeCount);
+  // A stand-in signal without gaps: it only brings in the times and weights.
+  loadSignal(whole, times_us, shotsPerTime, times_us, 0);
+  const isWhole = whole.count === timeCount;
   const block = new Float64Array(BLOCK * timeCount);
   const isFraction = rule.rule === "fraction-of-max";
   for (let j = 0; j < traceCount; j++) {
@@ -33,7 +37,8 @@ export function replicateCrossings(traces: TraceSet, rule: FrontRule, levels: Fl
       const size = Math.min(BLOCK, replicateCount - start);
       gatherBlock(block, replicates, { timeCount, traceCount, replicateCount, trace: j, start, size });
       for (let b = 0; b < size; b++) {
-        loadSignal(scratch, times_us, shotsPerTime, block, b * timeCount);
+        const scratch = isWhole && reloadSignal(whole, block, b * timeCount) ? whole : partial;
+        if (scratch === partial) loadSignal(partial, times_us, shotsPerTime, block, b * timeCount);
         const peak = orientSignal(scratch, rule.absolute);
         const level = isFraction && peak >= 0 ? rule.level * scratch.signal[peak] : levels[j];
         tau[j * replicateCount + start + b] = crossingTime_us(scratch, peak, level, rule);

@@ -1,4 +1,4 @@
-import { quantileSorted } from "@/lib/science/stats/quantiles";
+import { tailQuantiles } from "@/lib/science/stats/selection";
 
 const LOWER_TAIL = 0.025;
 
@@ -15,17 +15,20 @@ export interface ReplicateSummary {
 
 /** Returns count, standard deviation and 95 % percentile interval of the finite values. */
 export function summariseReplicates(values: Float64Array): ReplicateSummary {
-  const sorted = values.filter((value) => Number.isFinite(value)).sort();
-  const count = sorted.length;
-  if (count < 2) return { count, error: NaN, low: NaN, high: NaN };
+  const finite = new Float64Array(values.length);
+  let count = 0;
   let mean = 0;
-  for (const value of sorted) mean += value / count;
+  for (let b = 0; b < values.length; b++) {
+    const value = values[b];
+    // The difference is zero for finite values only.
+    if (value - value !== 0) continue;
+    finite[count] = value;
+    count += 1;
+    mean += (value - mean) / count;
+  }
+  if (count < 2) return { count, error: NaN, low: NaN, high: NaN };
   let squares = 0;
-  for (const value of sorted) squares += (value - mean) ** 2;
-  return {
-    count,
-    error: Math.sqrt(squares / (count - 1)),
-    low: quantileSorted(sorted, LOWER_TAIL),
-    high: quantileSorted(sorted, 1 - LOWER_TAIL),
-  };
+  for (let b = 0; b < count; b++) squares += (finite[b] - mean) ** 2;
+  const [low, high] = tailQuantiles(finite.subarray(0, count), LOWER_TAIL);
+  return { count, error: Math.sqrt(squares / (count - 1)), low, high };
 }

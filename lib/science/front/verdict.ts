@@ -1,4 +1,5 @@
 import type { Parameter, PowerLawFront, Verdict } from "@/lib/science/front/front-result";
+import type { WindowEvidence } from "@/lib/science/front/window-evidence";
 import { decimalsFor, fixed, shortForm } from "@/lib/science/front/short-form";
 
 /** The verdict on a front: the plain string, one sentence, and what it rests on. */
@@ -34,9 +35,15 @@ export function verdictOf(gamma: Parameter | null): Verdict {
   return "not distinguishable from linear";
 }
 
-/** Returns verdict, sentence and reasons of a power law, or of its absence for the reason given. */
-export function judgeFront(powerLaw: PowerLawFront | null, noFitReason: string): FrontVerdict {
-  const verdict = verdictOf(powerLaw?.gamma ?? null);
+/**
+ * Returns verdict, sentence and reasons of a power law, or of its absence for the reason given. "Faster than linear" is withheld when the
+ * points whose traces no longer rise at the end of the window do not show it by themselves: a window that ends before far traces reach their maximum makes
+ * their crossings early, and a straight cone look bent.
+ */
+export function judgeFront(powerLaw: PowerLawFront | null, noFitReason: string, window: WindowEvidence | null): FrontVerdict {
+  const read = verdictOf(powerLaw?.gamma ?? null);
+  const withheld = read === "faster than linear" && window?.gammaInside != null && verdictOf(window.gammaInside) !== read;
+  const verdict = withheld ? "not distinguishable from linear" : read;
   if (powerLaw === null || verdict === "no fit") {
     const reason = powerLaw === null ? noFitReason : "Too few replicates carry a fit to give γ an interval.";
     return {
@@ -47,8 +54,8 @@ export function judgeFront(powerLaw: PowerLawFront | null, noFitReason: string):
   }
   return {
     verdict,
-    verdictSentence: `${OPENINGS[verdict]}: ${exponentText(powerLaw)}.`,
-    verdictReasons: [intervalReason(powerLaw.gamma, verdict), ...BETA_ALONE_REASONS],
+    verdictSentence: `${OPENINGS[verdict]}${isOpen(verdict, window) ? " within this window" : ""}: ${exponentText(powerLaw)}.`,
+    verdictReasons: [intervalReason(powerLaw.gamma, read), ...windowReasons(read, withheld, window), ...BETA_ALONE_REASONS],
   };
 }
 
@@ -79,6 +86,20 @@ function intervalReason(gamma: Parameter, verdict: Verdict): string {
 function intervalText({ low, high, error }: Parameter): string {
   const decimals = decimalsFor(error ?? NaN) + 1;
   return `${fixed(low ?? NaN, decimals)} to ${fixed(high ?? NaN, decimals)}`;
+}
+
+/** Whether traces that still rise leave open what a longer window would show. */
+function isOpen(verdict: Verdict, window: WindowEvidence | null): boolean {
+  return verdict === "faster than linear" && window !== null && window.inside < window.points && window.gammaInside === null;
+}
+
+function windowReasons(read: Verdict, withheld: boolean, window: WindowEvidence | null): string[] {
+  if (window === null || read !== "faster than linear" || window.inside === window.points) return [];
+  const { points, inside, gammaInside } = window;
+  const opening = `${inside} of ${points} fitted traces no longer rise where the window ends; the others do, which makes their level too low and their crossing too early`;
+  if (withheld && gammaInside) return [`${opening}. Those that do not alone give γ from ${intervalText(gammaInside)}, which contains 1, so nothing faster than linear is claimed; measure longer.`];
+  if (gammaInside) return [`${opening}. Those that do not alone give γ from ${intervalText(gammaInside)}, below 1 as well.`];
+  return [`${opening}. Too few are left to judge by themselves: measure longer before claiming it.`];
 }
 
 function lowerFirst(sentence: string): string {

@@ -84,6 +84,27 @@ describe("method isotonic", () => {
   });
 });
 
+describe("method last-upcrossing", () => {
+  test("takes the last rise through the level before the maximum", () => {
+    expect(crossingOf([0, 0.3, 0, 0.2, 1], { method: "last-upcrossing" }).time_us).toBeCloseTo(35, 12);
+    expect(crossingOf([0, 0.3, 0, 0.2, 1], { method: "first", hold: 1 }).time_us).toBeCloseTo(10 + 10 / 3, 12);
+  });
+
+  test("samples after the maximum do not matter", () => {
+    expect(crossingOf([0, 0.05, 1, -0.5, 0.4], { method: "last-upcrossing" }).time_us).toBe(crossingOf([0, 0.05, 1, 0.9, 0.9], { method: "last-upcrossing" }).time_us);
+  });
+
+  test("a signal never below the level before its maximum is at-start, at the first time", () => {
+    const crossing = crossingOf([0.2, 0.4, 1], { method: "last-upcrossing" });
+    expect(crossing.status).toBe("at-start");
+    expect(crossing.time_us).toBe(10);
+  });
+
+  test("a fixed level above the maximum is not crossed", () => {
+    expect(crossingOf([0, 0.1, 0.3], { method: "last-upcrossing", rule: "fixed-level", level: 0.4 }).status).toBe("no-crossing");
+  });
+});
+
 describe("the level", () => {
   test("a fixed level above the maximum is not crossed", () => {
     expect(crossingOf([0, 0.1, 0.3], { rule: "fixed-level", level: 0.4 }).status).toBe("no-crossing");
