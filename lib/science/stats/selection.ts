@@ -3,10 +3,12 @@
  * smaller after it, and returns it. Finite values only; `values` is reordered. Hoare's selection (1961), median of three.
  */
 export function selectRank(values: Float64Array, rank: number, first: number, last: number): number {
-  while (first < last) {
-    const pivot = medianOfThree(values[first], values[(first + last) >>> 1], values[last]);
-    let left = first;
-    let right = last;
+  let low = first;
+  let high = last;
+  while (low < high) {
+    const pivot = medianOfThree(values[low], values[(low + high) >>> 1], values[high]);
+    let left = low;
+    let right = high;
     while (left <= right) {
       while (values[left] < pivot) left += 1;
       while (values[right] > pivot) right -= 1;
@@ -17,8 +19,8 @@ export function selectRank(values: Float64Array, rank: number, first: number, la
       left += 1;
       right -= 1;
     }
-    if (rank <= right) last = right;
-    else if (rank >= left) first = left;
+    if (rank <= right) high = right;
+    else if (rank >= left) low = left;
     else return values[rank];
   }
   return values[rank];
