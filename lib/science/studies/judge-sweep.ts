@@ -1,4 +1,4 @@
-import { fixed, shortForm } from "@/lib/science/front/short-form";
+import { decimalsFor, fixed, shortForm } from "@/lib/science/front/short-form";
 import { quantile } from "@/lib/science/stats/quantiles";
 import { CHOICE_NAMES, differingChoices, type ChoiceName } from "@/lib/science/studies/sweep-choices";
 import { choiceLabel, combinationLabel } from "@/lib/science/studies/sweep-labels";
@@ -55,10 +55,9 @@ type Judged = Omit<SweepResult, "sentence" | "notes">;
 function sentenceOf({ baseline, saved, choices, middle, fasterThanLinear, slowerThanLinear }: Judged, betas: number[]): string {
   if (baseline.beta === null || middle === null) return `The analysis' own choices allow no power law without a bootstrap: ${baseline.reason ?? "γ is zero."}`;
   const span = (low: number, high: number) => `between ${fixed(low, 2)} and ${fixed(high, 2)}`;
-  const error = saved === null ? baseline.beta.error : saved.error / saved.value ** 2;
   const [side, agreeing] = baseline.beta.value < 1 ? ["slower", slowerThanLinear] : ["faster", fasterThanLinear];
   const sentences = [
-    `As saved β = ${shortForm(baseline.beta.value, error)}; over ${betas.length} combinations of choices it lies ${span(Math.min(...betas), Math.max(...betas))}, in 19 of 20 of them ${span(middle.low, middle.high)}.`,
+    `${openingOf(baseline.beta, saved)}; over ${betas.length} combinations of choices it lies ${span(Math.min(...betas), Math.max(...betas))}, in 19 of 20 of them ${span(middle.low, middle.high)}.`,
     `${agreeing} of them are ${side} than linear by 1.96 of their errors.`,
   ];
   const [first] = choices;
@@ -66,6 +65,13 @@ function sentenceOf({ baseline, saved, choices, middle, fasterThanLinear, slower
     sentences.push(`Most hangs on the ${choiceLabel(first.name)}, which alone moves γ by up to ${fixed(first.shift, 1)} of its error.`);
   }
   return sentences.join(" ");
+}
+
+/** The same choices weigh their points a little differently without a bootstrap. */
+function openingOf(own: SweptNumber, saved: SweptNumber | null): string {
+  if (saved === null || saved.value === 0) return `With the choices as saved β = ${shortForm(own.value, own.error)} without a bootstrap`;
+  const error = saved.error / saved.value ** 2;
+  return `The analysis has β = ${shortForm(1 / saved.value, error)}, its choices without a bootstrap ${fixed(own.value, Math.max(1, decimalsFor(error)))}`;
 }
 
 function notesOf({ combinations, withoutFit, baseline, saved }: Judged): string[] {

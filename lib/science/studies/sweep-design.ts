@@ -57,7 +57,7 @@ function alternativesOf({ saved, rule, sites, times, thresholdShifts }: SweepRoo
     threshold: others(thresholdShifts.map((thresholdShift) => ({ thresholdShift })), "threshold"),
     level: others(levelsBeside(saved.level, rule).map((level) => ({ level })), "level"),
     traces: others([{ traces: { kind: "distance" } }, ...someSites(sites).map((site) => ({ traces: { kind: "reference" as const, site } }))], "traces"),
-    crossing: others([{ method: "isotonic" }, ...HOLDS.map((hold) => ({ method: "first" as const, hold }))], "crossing"),
+    crossing: others([{ method: "isotonic" }, { method: "last-upcrossing" }, ...HOLDS.map((hold) => ({ method: "first" as const, hold }))], "crossing"),
     correction: others([{ readoutCorrection: !saved.readoutCorrection }], "correction"),
     "first-times": others(leftOut.map((firstLeftOut) => ({ firstLeftOut })), "first-times"),
     "last-times": others(leftOut.map((lastLeftOut) => ({ lastLeftOut })), "last-times"),

@@ -25,7 +25,7 @@ export function optionLabel(name: ChoiceName, choices: SweepChoices): string {
     case "traces":
       return choices.traces.kind === "distance" ? "by distance" : `reference site ${choices.traces.site}`;
     case "crossing":
-      return choices.method === "first" ? `first, hold ${choices.hold}` : choices.method;
+      return choices.method === "first" ? `first, hold ${choices.hold}` : choices.method.replace("-", " ");
     case "correction":
       return choices.readoutCorrection ? "corrected" : "not corrected";
     case "first-times":

@@ -30,6 +30,21 @@ describe("the closed-form error of a trace", () => {
     });
   });
 
+  it("of very many pairs is taken over spread shots, and still is what all shots say within a tenth", () => {
+    const wide = countedRun(48, 2, 1200, 5, 2);
+    const wideSpins = packSpins(wide.counts[1], wide.shots, 48, wide.thresholds, "up");
+    const wideCounts = countUps(wideSpins);
+    const all = planDistanceTraces(wide.positions);
+    const spread = averageVariances(wideSpins, wideCounts, all, null);
+    for (const distance of [1, 2, 5]) {
+      const trace = distance - 1;
+      const alone = { ...all, labels: ["alone"], distances: Float64Array.of(distance), offsets: Uint32Array.of(0, all.offsets[trace + 1] - all.offsets[trace]), pairs: all.pairs.slice(all.offsets[trace], all.offsets[trace + 1]) };
+      const [exact] = averageVariances(wideSpins, wideCounts, alone, null);
+      expect(Math.abs(Math.sqrt(spread[trace] / exact) - 1)).toBeLessThan(0.1);
+      expect(spread[trace]).not.toBe(exact);
+    }
+  });
+
   it("grows with the factors of a readout correction as the correlator does", () => {
     const plan = planDistanceTraces(run.positions);
     const plain = averageVariances(spins, counts, plan, null);
