@@ -1,9 +1,11 @@
 import type { TimeResult, TimeTask } from "@/lib/science/correlators/analyse-time";
-import { covarianceLaw, errorBarOfLaw, isRegular, scaledLaw } from "@/lib/science/correlators/bootstrap-law";
+import { correctedLaw, covarianceLaw, errorBarOfLaw, isRegular, scaledLaw } from "@/lib/science/correlators/bootstrap-law";
 import { hasFewFlips } from "@/lib/science/correlators/connected-correlators";
 import { twoSidedPValue } from "@/lib/science/correlators/independence-test";
 import { listPairs, pairCount } from "@/lib/science/correlators/pairs";
+import type { ReadoutReplicates } from "@/lib/science/correlators/readout-correction";
 import { pairsOfTrace, type TracePlan } from "@/lib/science/correlators/trace-plan";
+import { standardDeviation } from "@/lib/science/stats/intervals";
 import { softReplicates } from "@/lib/science/threshold-free/soft-replicates";
 import { soften, softCovariance, softOutcomes, softPairMoments, type SoftSums } from "@/lib/science/threshold-free/soft-moments";
 import type { SoftSpins } from "@/lib/science/threshold-free/soft-spins";
@@ -11,6 +13,8 @@ import type { SoftSpins } from "@/lib/science/threshold-free/soft-spins";
 /** An evolution time read without thresholds; everything else as in `TimeTask`. There is no readout left to correct. */
 export interface SoftTimeTask extends Omit<TimeTask, "spins" | "readout"> {
   spins: SoftSpins;
+  /** What each replicate makes of the soft spins under its own laws of counts; null when the laws are taken as exact. */
+  lawReplicates: ReadoutReplicates | null;
 }
 
 /** What is known of one evolution time before its replicates. */
@@ -30,8 +34,7 @@ export interface SoftTime {
  * which need no readout correction, with the joint bootstrap of `analyseTime` over the same resampled shots. Single pairs' errors and
  * intervals come from the bootstrap law of a covariance (`law`) where each soft outcome has 25 shots or more, else from
  * replicates; `fewFlips` marks a soft outcome below 5 shots; `pValue` is that of the correlation coefficient r under permutation of the
- * shots, 2 Φ(−|r| √(M − 1)) (Pitman 1937). The uncertainty of the fitted count laws is not in the errors. Undefined values as in
- * `TimeResult`.
+ * shots, 2 Φ(−|r| √(M − 1)) (Pitman 1937). Undefined values as in `TimeResult`.
  */
 export function analyseTimeSoftly(task: SoftTimeTask): TimeResult {
   const time = prepareTime(task);
@@ -47,7 +50,7 @@ export function analyseTimeSoftly(task: SoftTimeTask): TimeResult {
   }
   const byLaw = task.pairErrors === "law" && task.blockLength === 1;
   if (byLaw) {
-    result.meanError.forEach((_, i) => (result.meanError[i] = Math.sqrt(time.sums.variance[i] / shots)));
+    result.meanError.forEach((_, i) => (result.meanError[i] = meanErrorByLaw(time, i)));
     lawOfSoftPairs(time, result);
   }
   softReplicates(time, result);
@@ -111,15 +114,31 @@ function addTraceValues(plan: TracePlan, result: TimeResult): void {
   });
 }
 
+/** Of the shots exactly, and of the drawn laws of counts with it. */
+function meanErrorByLaw({ task, sums }: SoftTime, i: number): number {
+  const { replicates, lawReplicates, spins } = task;
+  const variance = sums.variance[i] / spins.shots;
+  if (lawReplicates === null) return Math.sqrt(variance);
+  const factors = lawReplicates.inverseFactor.subarray(i * replicates, (i + 1) * replicates);
+  const means = factors.map((factor, b) => (sums.mean[i] - lawReplicates.offset[i * replicates + b]) * factor);
+  const spread = replicates < 2 ? 0 : standardDeviation(means);
+  return Math.sqrt(variance * lawReplicates.factorMoments[i][1] + spread * spread);
+}
+
 function lawOfSoftPairs(time: SoftTime, result: TimeResult): void {
   const { task, sums, sitesOfPair, plugIn, scale } = time;
   const { shots } = task.spins;
+  const factors = task.lawReplicates?.factorMoments;
   for (let pair = 0; pair < plugIn.length; pair++) {
     if (!isRegular(outcomesOf(time, pair))) continue;
-    const moments = softPairMoments(sums, shots, sitesOfPair[2 * pair], sitesOfPair[2 * pair + 1], plugIn[pair]);
+    const i = sitesOfPair[2 * pair];
+    const j = sitesOfPair[2 * pair + 1];
+    const moments = softPairMoments(sums, shots, i, j, plugIn[pair]);
     // Leaving out a shot moves a covariance in proportion to w, so Σd³/(6 (Σd²)^{3/2}) is one of its moments.
     const acceleration = moments.w2 === 0 ? 0 : moments.w3 / (6 * Math.sqrt(shots) * moments.w2 ** 1.5);
-    const bar = errorBarOfLaw(scaledLaw(covarianceLaw(moments, shots), scale), result.value[pair], task.interval, acceleration);
+    const exact = scaledLaw(covarianceLaw(moments, shots), scale);
+    const law = factors === undefined ? exact : correctedLaw(exact, factors[i], factors[j]);
+    const bar = errorBarOfLaw(law, result.value[pair], task.interval, acceleration);
     result.error[pair] = bar.error;
     result.low[pair] = bar.low;
     result.high[pair] = bar.high;

@@ -10,7 +10,7 @@ import { OVERLAPPING, softShots } from "@/tests/science/threshold-free/soft-shot
 
 const SITES = 5;
 const chain = { x: Float64Array.from({ length: SITES }, (_, i) => i), y: null };
-const FIXED = { timeIndex: 3, plan: planDistanceTraces(chain), estimator: "plug-in", replicates: 500, seed: 21, interval: "percentile", blockLength: 1, pairErrors: "law" } as const;
+const FIXED = { timeIndex: 3, plan: planDistanceTraces(chain), estimator: "plug-in", replicates: 500, seed: 21, interval: "percentile", blockLength: 1, pairErrors: "law", lawReplicates: null } as const;
 
 const taskOf = (spins: SoftSpins, changes: Partial<SoftTimeTask> = {}): SoftTimeTask => ({ ...FIXED, spins, ...changes });
 
