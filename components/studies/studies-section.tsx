@@ -65,9 +65,11 @@ export function StudiesSection({ analysisId, views, model, jMaxHz, mayStart, may
             {nullFront.done && (
               <>
                 <Sentence sentence={nullFront.done.result.sentence} warnings={nullFront.done.result.warnings} />
-                <div className="mt-3">
-                  <NullFrontChart result={nullFront.done.result} />
-                </div>
+                {nullFront.done.result.fitted > 0 && (
+                  <div className="mt-3">
+                    <NullFrontChart result={nullFront.done.result} />
+                  </div>
+                )}
               </>
             )}
           </StudyCard>
