@@ -18,10 +18,12 @@ interface FrontStationProps {
   siteNames: string[];
   traces: TracesAnswer;
   front: FrontResult;
+  /** What the comparison with a nearest-neighbour chain says; null until one has been made. */
+  comparison: string | null;
 }
 
 /** The front of a saved analysis: the map with the front over it, distance against time, both fits, what did not resolve. */
-export function FrontStation({ analysisId, siteNames, traces, front }: FrontStationProps) {
+export function FrontStation({ analysisId, siteNames, traces, front, comparison }: FrontStationProps) {
   const map = useMemo(() => traceMap(traces, siteNames), [traces, siteNames]);
   const crossings = useMemo(() => mapCrossings(front, map.traceOfRow), [front, map]);
   const curves = useMemo(() => fitCurves(front), [front]);
@@ -29,7 +31,7 @@ export function FrontStation({ analysisId, siteNames, traces, front }: FrontStat
   const trace = Math.max(0, Math.min(traces.labels.length - 1, Number.parseInt(chosen, 10) || 0));
   return (
     <>
-      <VerdictBlock front={front} />
+      <VerdictBlock front={front} comparison={comparison} />
       <div className="mt-5 grid grid-cols-1 gap-x-8 gap-y-6 lg:grid-cols-2 xl:grid-cols-[5fr_4fr_17rem]">
         <CorrelationMap
           title="Correlations and front"

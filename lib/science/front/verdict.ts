@@ -24,7 +24,7 @@ const OPENINGS: Record<Exclude<Verdict, "no fit">, string> = {
 const BETA_ALONE_REASONS = [
   "β > 1 alone is no proof of anything faster than a nearest-neighbour cone: on a finite chain the fraction-of-maximum rule bends even an exactly straight cone.",
   "For the nearest-neighbour chain, exactly, 10\u202f% of the maximum gives γ ≈ 1.39 (β ≈ 0.72) over distances 1–7 and γ ≈ 1.06 (β ≈ 0.94) over 10–40 when every maximum lies inside the window, and β ≈ 1.35 over 1–7 when the window ends at vt = 2 sites, before most maxima.",
-  "The comparison with the same extraction run on the nearest-neighbour model at this run's times, sizes and shots, the null front, is not made yet.",
+  "The comparison with the same extraction run on the nearest-neighbour model at this run's times, sizes and shots, the null front, is a study of its own.",
 ];
 
 /** Returns the verdict from the 95 % interval of γ over the full-pipeline bootstrap. */

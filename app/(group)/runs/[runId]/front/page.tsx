@@ -21,7 +21,13 @@ export default async function FrontPage({ params, searchParams }: PageProps<"/ru
         return (
           <>
             <Suspense>
-              <FrontStation analysisId={row.analysis.id} siteNames={row.siteNames} traces={await readTraces(row)} front={await readFront(row)} />
+              <FrontStation
+                analysisId={row.analysis.id}
+                siteNames={row.siteNames}
+                traces={await readTraces(row)}
+                front={await readFront(row)}
+                comparison={isProblem(studies) ? null : (studies.nullFront.done?.result.sentence ?? null)}
+              />
             </Suspense>
             {!isProblem(studies) && (
               <StudiesSection
