@@ -13,7 +13,7 @@ import type { NullFrontRepeat, NullFrontResult } from "@/lib/science/studies/nul
 import { isStudyRefusal, type StudyRefusal } from "@/lib/science/studies/study-refusal";
 import type { StudyInputs } from "./load-study";
 import { repeatsInThreads } from "./repeats-in-threads";
-import { simulatedAnalysis } from "./simulated-analysis";
+import { readingNotes, simulatedAnalysis } from "./simulated-analysis";
 
 /** Runs the analysis on simulated runs of the nearest-neighbour chain. */
 export async function runNullFront(inputs: StudyInputs, asked: Extract<StudyParameters, { kind: "null-front" }>, context: JobContext): Promise<NullFrontResult | Problem> {
@@ -31,5 +31,6 @@ export async function runNullFront(inputs: StudyInputs, asked: Extract<StudyPara
   const plan = (await context.pool.run(input, { name: "nullFrontPlanInThread", signal: context.signal })) as NullFrontPlan | StudyRefusal;
   if (isStudyRefusal(plan)) return invalidAt(plan.where, plan.message);
   const repeats = await repeatsInThreads<NullFrontPlan, NullFrontRepeat>("nullFrontRepeatsInThread", plan, asked.repeats, context);
-  return judgeNullFront(plan, repeats, frontNumbers(front).gamma);
+  const result = judgeNullFront(plan, repeats, frontNumbers(front).gamma);
+  return { ...result, warnings: [...readingNotes(inputs), ...result.warnings] };
 }

@@ -12,7 +12,7 @@ import type { SelfTestRepeat, SelfTestResult } from "@/lib/science/studies/self-
 import { isStudyRefusal, type StudyRefusal } from "@/lib/science/studies/study-refusal";
 import type { StudyInputs } from "./load-study";
 import { repeatsInThreads } from "./repeats-in-threads";
-import { simulatedAnalysis } from "./simulated-analysis";
+import { readingNotes, simulatedAnalysis } from "./simulated-analysis";
 
 /** Runs the analysis on simulated runs whose front is the one it has fitted. */
 export async function runSelfTest(inputs: StudyInputs, asked: Extract<StudyParameters, { kind: "self-test" }>, context: JobContext): Promise<SelfTestResult | Problem> {
@@ -39,5 +39,6 @@ export async function runSelfTest(inputs: StudyInputs, asked: Extract<StudyParam
   const plan = (await context.pool.run(input, { name: "selfTestPlanInThread", signal: context.signal })) as SelfTestPlan | StudyRefusal;
   if (isStudyRefusal(plan)) return invalidAt(plan.where, plan.message);
   const repeats = await repeatsInThreads<SelfTestPlan, SelfTestRepeat>("selfTestRepeatsInThread", plan, asked.repeats, context);
-  return judgeSelfTest(plan, repeats);
+  const result = judgeSelfTest(plan, repeats);
+  return { ...result, warnings: [...readingNotes(inputs), ...result.warnings] };
 }

@@ -11,6 +11,7 @@ import type { SweepInput } from "@/lib/science/studies/sweep-input";
 import type { SweepResult } from "@/lib/science/studies/sweep-result";
 import type { SweepTime, SweepTimeTask } from "@/lib/science/studies/sweep-time";
 import type { StudyInputs } from "./load-study";
+import { readingNotes } from "./simulated-analysis";
 import { shiftedReadoutErrors } from "./sweep-readout";
 
 const WHOLE_COUNT_SHIFTS = [-1, 0, 1];
@@ -52,8 +53,7 @@ export async function runSweep(inputs: StudyInputs, context: JobContext): Promis
   context.progress("combinations of choices", COUNTING_SHARE);
   const message: SweepMessage = { input, times };
   const result = (await context.pool.run(message, { name: "sweepInThread", signal: context.signal })) as SweepResult;
-  if (parameters.reading === "threshold") return result;
-  return { ...result, notes: ["The analysis reads spins without thresholds; the sweep reads them with the thresholds of its detection.", ...result.notes] };
+  return { ...result, notes: [...readingNotes(inputs), ...result.notes] };
 }
 
 /** Sends every time to a thread, loading ahead by one so that threads do not wait for the database. */

@@ -24,3 +24,8 @@ export function simulatedAnalysis({ analysis, version, sites }: StudyInputs, see
     seed,
   };
 }
+
+/** Returns what to keep in mind where an analysis reads spins in another way than its studies do. */
+export function readingNotes({ analysis }: StudyInputs): string[] {
+  return analysis.parameters.reading === "threshold" ? [] : ["The analysis reads spins without thresholds; this study reads them with the thresholds of its detection."];
+}
