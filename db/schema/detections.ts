@@ -15,8 +15,8 @@ export interface DetectionSite {
   fidelity: number | null;
   /** What the ε's rest on, for their own uncertainty: Beta(x + ½, K − x + ½) per rate. */
   evidence: { dark: { errors: number; shots: number }; bright: { errors: number; shots: number } } | null;
-  /** Fitted Poisson components, when a mixture was fitted. */
-  mixture: { dark: number; bright: number; brightWeight: number } | null;
+  /** Fitted components with the standard errors of their rates, when a mixture was fitted; detections from before they were kept have none. */
+  mixture: { dark: number; bright: number; brightWeight: number; darkError?: number; brightError?: number } | null;
   warnings: { code: string; message: string }[];
 }
 

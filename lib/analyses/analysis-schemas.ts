@@ -36,7 +36,7 @@ export const CreateAnalysisInput = z.strictObject({
   detectionId: Id,
   readoutCorrection: z.boolean().default(false),
   estimator: z.enum(["plug-in", "unbiased"]).default("plug-in"),
-  reading: z.literal("threshold").default("threshold"),
+  reading: z.enum(["threshold", "threshold-free"]).default("threshold"),
   bootstrap: Bootstrap.prefault({}),
   traces: Traces.prefault({ kind: "reference" }),
   front: Front.prefault({}),

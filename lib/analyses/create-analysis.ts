@@ -13,7 +13,8 @@ import { invalidAt, isProblem, problem, type Problem } from "@/lib/problem";
 import { findRunInGroup, type RunRow, type RunVersionRow } from "@/lib/runs/find-run";
 import type { CreateAnalysisInput } from "./analysis-schemas";
 import { positionsOf } from "./analysis-positions";
-import { blockLengthProblem, planTraces, readoutOf, replicatesProblem, sitesProblem } from "./plan-analysis";
+import { blockLengthProblem, planTraces, replicatesProblem, sitesProblem } from "./plan-analysis";
+import { planReading } from "./plan-reading";
 import { PROGRAM_VERSION } from "./program-version";
 
 export interface StartedAnalysis {
@@ -88,7 +89,8 @@ function checkParameters(parameters: AnalysisParameters, sites: DetectionRow["si
   const plan = planTraces(parameters.traces, positions);
   if (isProblem(plan)) return plan;
   const tooLarge = replicatesProblem(plan, version.timesUs.length, parameters.bootstrap.replicates);
-  if (tooLarge || !parameters.readoutCorrection) return tooLarge;
-  const readout = readoutOf(sites, run.brightIs, parameters.bootstrap.seed, 0);
-  return isProblem(readout) ? readout : null;
+  if (tooLarge) return tooLarge;
+  const { countType } = version;
+  const reading = planReading({ parameters, sites, countType, brightIs: run.brightIs, seed: parameters.bootstrap.seed, replicates: 0 });
+  return isProblem(reading) ? reading : null;
 }

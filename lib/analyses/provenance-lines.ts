@@ -11,10 +11,11 @@ export function provenanceLines({ analysis, runTitle, createdByName }: AnalysisR
     `analysis: ${analysis.number} (${analysis.id}) by ${oneLine(createdByName)}, ${analysis.createdAt.toISOString()}`,
     ...provenance.archives.map((archive) => `archive: ${oneLine(archive.filename)} role ${archive.role} sha256 ${archive.sha256}`),
     `detection: ${provenance.detectionNumber} (${analysis.detectionId}); bright is ${provenance.brightIs}`,
+    `spins: ${parameters.reading === "threshold" ? "by thresholds" : "by the fitted count distributions, without thresholds"}`,
     `estimator: ${parameters.estimator}; readout correction: ${parameters.readoutCorrection ? "yes" : "no"}`,
-    `bootstrap: ${bootstrap.replicates} replicates, seed ${bootstrap.seed}, 95 % ${bootstrap.interval} intervals`,
+    `bootstrap: ${bootstrap.replicates} replicates, seed ${bootstrap.seed}, 95 % ${bootstrap.interval} intervals${bootstrap.blockLength > 1 ? `, blocks of ${bootstrap.blockLength} consecutive shots` : ""}`,
     `traces: ${traces.kind === "reference" ? `reference site ${traces.site}` : `by distance${traces.bulk ? ` within sites ${traces.bulk.join(" ")}` : ""}`}`,
-    `front: ${front.rule} level ${front.level}, method ${front.method}, hold ${front.hold}, min signal ${front.minSignal}, ${front.absolute ? "absolute" : "oriented"} signal${front.throughOrigin ? ", line through the origin" : ""}`,
+    `front: ${front.rule} level ${front.level}, method ${front.method}, hold ${front.hold}, min signal ${front.minSignal}, ${front.absolute ? "absolute" : "oriented"} signal${front.throughOrigin ? ", line through the origin" : ""}, power law fitted in ${front.powerLawIn === "time" ? "time" : "log time"}`,
   ];
 }
 

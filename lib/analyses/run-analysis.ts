@@ -6,16 +6,17 @@ import { runVersions } from "@/db/schema/run-versions";
 import type { JobContext, JobRow, RefusedJob } from "@/lib/jobs/job-context";
 import { isProblem, problem } from "@/lib/problem";
 import { loadSlot } from "@/lib/runs/load-counts";
+import type { ShotBlock } from "@/lib/runs/shot-block";
 import type { TimeResult } from "@/lib/science/correlators/analyse-time";
 import { collectTraces } from "@/lib/science/correlators/collect-traces";
-import type { ReadoutCorrection } from "@/lib/science/correlators/readout-correction";
 import type { TracePlan } from "@/lib/science/correlators/trace-plan";
 import type { TraceSet } from "@/lib/science/front/trace-set";
-import { planTraces, readoutOf } from "./plan-analysis";
+import { planTraces } from "./plan-analysis";
+import { planReading, type Reading } from "./plan-reading";
 import { removeArraysOfNobody } from "./result-arrays";
 import { storeResults } from "./store-results";
 import { summarise } from "./summarise";
-import type { FrontAnswer, FrontMessage, TimeMessage } from "./thread-task";
+import type { FrontAnswer, FrontMessage, SoftTimeMessage, TimeMessage } from "./thread-task";
 
 type AnalysisRow = typeof analyses.$inferSelect;
 type VersionRow = typeof runVersions.$inferSelect;
@@ -38,9 +39,9 @@ export async function runAnalysisJob(job: JobRow, context: JobContext): Promise<
   const { seed, replicates } = parameters.bootstrap;
   const plan = planTraces(parameters.traces, provenance.positions);
   if (isProblem(plan)) return { problem: plan };
-  const readout = parameters.readoutCorrection ? readoutOf(sites, provenance.brightIs, seed, replicates) : null;
-  if (isProblem(readout)) return { problem: readout };
-  const results = await analyseTimes(inputs, plan, readout, context);
+  const reading = planReading({ parameters, sites, countType: version.countType, brightIs: provenance.brightIs, seed, replicates });
+  if (isProblem(reading)) return { problem: reading };
+  const results = await analyseTimes(inputs, plan, reading, context);
   context.progress("crossings, fits and verdict", CORRELATOR_SHARE);
   const traces = collectTraces(plan, Float64Array.from(version.timesUs), results, replicates);
   const { front, bands } = await runFront(traces, parameters, context);
@@ -75,34 +76,18 @@ async function loadInputs(job: JobRow, { database }: JobContext): Promise<Inputs
 }
 
 /** Sends every time to a thread, loading ahead by one so that threads do not wait for the database. */
-async function analyseTimes({ analysis, version, sites }: Inputs, plan: TracePlan, readout: ReadoutCorrection | null, context: JobContext): Promise<TimeResult[]> {
-  const { parameters, provenance } = analysis;
+async function analyseTimes(inputs: Inputs, plan: TracePlan, reading: Reading, context: JobContext): Promise<TimeResult[]> {
+  const { analysis, version } = inputs;
   const key = { runId: analysis.runId, version: version.number };
-  const thresholds = Float64Array.from(sites, ({ threshold }) => threshold);
   const times = version.timesUs.length;
   const results: TimeResult[] = [];
   const underWay = new Set<Promise<void>>();
   for (const [timeIndex, slot] of version.timeSlots.entries()) {
     context.signal.throwIfAborted();
-    const { shots, counts } = await loadSlot(context.database, key, slot, version.sites);
-    const message: TimeMessage = {
-      timeIndex,
-      counts,
-      shots,
-      sites: version.sites,
-      thresholds,
-      brightIs: provenance.brightIs,
-      estimator: parameters.estimator,
-      readout,
-      plan,
-      replicates: parameters.bootstrap.replicates,
-      seed: parameters.bootstrap.seed,
-      interval: parameters.bootstrap.interval,
-      blockLength: parameters.bootstrap.blockLength,
-      pairErrors: "law",
-    };
+    const loaded = await loadSlot(context.database, key, slot, version.sites);
+    const { name, message } = timeMessage(inputs, plan, reading, timeIndex, loaded);
     const running: Promise<void> = context.pool
-      .run(message, { name: "timeInThread", transferList: [counts.buffer as ArrayBuffer], signal: context.signal })
+      .run(message, { name, transferList: [loaded.counts.buffer as ArrayBuffer], signal: context.signal })
       .then((result: TimeResult) => {
         results.push(result);
         context.progress(`correlators and bootstrap: ${results.length} of ${times} times`, (CORRELATOR_SHARE * results.length) / times);
@@ -114,6 +99,19 @@ async function analyseTimes({ analysis, version, sites }: Inputs, plan: TracePla
   }
   await Promise.all(underWay);
   return results.sort((first, second) => first.timeIndex - second.timeIndex);
+}
+
+type TimeCall = { name: "timeInThread"; message: TimeMessage } | { name: "softTimeInThread"; message: SoftTimeMessage };
+
+function timeMessage({ analysis, version }: Inputs, plan: TracePlan, reading: Reading, timeIndex: number, { shots, counts }: ShotBlock): TimeCall {
+  const { estimator, bootstrap } = analysis.parameters;
+  const common = { timeIndex, shots, sites: version.sites, estimator, plan, ...bootstrap, pairErrors: "law" as const };
+  if (reading.kind === "threshold") {
+    const { thresholds, readout } = reading;
+    return { name: "timeInThread", message: { ...common, counts, thresholds, brightIs: analysis.provenance.brightIs, readout } };
+  }
+  if (!(counts instanceof Uint16Array)) throw new Error(`analysis ${analysis.id} reads fractional counts without thresholds`);
+  return { name: "softTimeInThread", message: { ...common, counts, weights: reading.weights, lawReplicates: reading.lawReplicates } };
 }
 
 function runFront(traces: TraceSet, { front }: AnalysisParameters, { pool, signal }: JobContext): Promise<FrontAnswer> {

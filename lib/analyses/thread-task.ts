@@ -3,6 +3,8 @@ import { simultaneousBands, type SimultaneousBands } from "@/lib/science/correla
 import { packSpins, type BrightIs } from "@/lib/science/correlators/packed-spins";
 import { analyseFront, type FrontAnalysis } from "@/lib/science/front/analyse-front";
 import type { FrontFitOptions, FrontRule } from "@/lib/science/front/front-rule";
+import { analyseTimeSoftly, type SoftTimeTask } from "@/lib/science/threshold-free/analyse-time-softly";
+import { softenCounts } from "@/lib/science/threshold-free/soft-spins";
 import type { TraceSet } from "@/lib/science/front/trace-set";
 import { nullFrontRepeat, planNullFront, type NullFrontPlan } from "@/lib/science/studies/null-front";
 import type { NullFrontInput } from "@/lib/science/studies/null-front-input";
@@ -29,6 +31,21 @@ export interface TimeMessage extends Omit<TimeTask, "spins"> {
 /** Counts to spins to correlators with their joint bootstrap, for one time. */
 export function timeInThread({ counts, shots, sites, thresholds, brightIs, ...task }: TimeMessage): TimeResult {
   return analyseTime({ ...task, spins: packSpins(counts, shots, sites, thresholds, brightIs) });
+}
+
+/** One evolution time that is read without thresholds. */
+export interface SoftTimeMessage extends Omit<SoftTimeTask, "spins"> {
+  /** `[shot][site]` */
+  counts: Uint16Array;
+  shots: number;
+  sites: number;
+  /** `[site][bin]`, the soft spin of each count. */
+  weights: Float64Array[];
+}
+
+/** Counts to soft spins to correlators with their joint bootstrap, for one time. */
+export function softTimeInThread({ counts, shots, sites, weights, ...task }: SoftTimeMessage): TimeResult {
+  return analyseTimeSoftly({ ...task, spins: softenCounts(counts, shots, sites, weights) });
 }
 
 export interface FrontMessage {

@@ -21,7 +21,7 @@ export const DetectionAnswer = z.object({
   falseBrightInterval: Intervals,
   falseDarkInterval: Intervals,
   fidelity: Rates,
-  mixture: z.array(z.object({ dark: z.number(), bright: z.number(), brightWeight: z.number() }).nullable()),
+  mixture: z.array(z.object({ dark: z.number(), bright: z.number(), brightWeight: z.number(), darkError: z.number().optional(), brightError: z.number().optional() }).nullable()),
   warnings: z.array(z.array(z.object({ code: z.string(), message: z.string() }))),
   createdBy: z.string(),
   createdAt: z.iso.datetime(),

@@ -7,7 +7,7 @@ import {
 } from "@/lib/science/detection/detection-warnings";
 import { largestBin, type SiteHistogram } from "@/lib/science/detection/histogram";
 import { mixtureErrorRates } from "@/lib/science/detection/mixture-error-rates";
-import { fitPoissonMixture } from "@/lib/science/detection/poisson-mixture";
+import { fitPoissonMixture, type TwoComponents } from "@/lib/science/detection/poisson-mixture";
 import {
   fitWarnings,
   isUsable,
@@ -36,7 +36,7 @@ export interface DetectedSite {
   evidence: CalibratedRates["evidence"] | null;
   ratesFrom: "calibration" | "mixture" | null;
   /** The fitted components, when a mixture was fitted and has two. */
-  mixture: { dark: number; bright: number; brightWeight: number } | null;
+  mixture: { dark: number; bright: number; brightWeight: number; darkError: number; brightError: number } | null;
   warnings: DetectionWarning[];
 }
 
@@ -122,10 +122,13 @@ function detectSite(input: DetectionInput, site: number, chosen: ChosenThreshold
     fidelity: rates === null ? null : 1 - (rates.falseBright + rates.falseDark) / 2,
     evidence: rates?.evidence ?? null,
     ratesFrom: rates === null ? null : source,
-    mixture:
-      fit?.kind === "two-components" ? { dark: fit.dark, bright: fit.bright, brightWeight: fit.brightWeight } : null,
+    mixture: fit?.kind === "two-components" ? componentsOf(fit) : null,
     warnings: codes.map(detectionWarning),
   };
+}
+
+function componentsOf({ dark, bright, brightWeight, darkError, brightError }: TwoComponents): DetectedSite["mixture"] {
+  return { dark, bright, brightWeight, darkError, brightError };
 }
 
 function ratesOf(input: DetectionInput, site: number, threshold: number, fit: SiteFit): CalibratedRates | null {
