@@ -33,11 +33,6 @@ export function poissonCountLaw({ dark, bright, brightWeight }: FittedComponents
   return { dark: poissonBins(dark, bins), bright: poissonBins(bright, bins), brightWeight };
 }
 
-/** `[site]`; null where no two components were fitted: such a site has no law of counts. */
-export function poissonCountLaws(sites: readonly { mixture: FittedComponents | null }[]): (CountLaw | null)[] {
-  return sites.map(({ mixture }) => (mixture === null ? null : poissonCountLaw(mixture)));
-}
-
 /**
  * Returns the law of any two densities over whole counts from 0, on `bins` bins; what they leave of 1 is put into the last bin.
  * Throws RangeError where a density is negative or adds up to more than 1 by more than rounding.

@@ -1,7 +1,7 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { poissonErrorRates, advisePoissonThreshold } from "@/lib/science/detection/threshold";
-import { countLawOf, poissonCountLaw, poissonCountLaws, type CountLaw } from "@/lib/science/threshold-free/count-laws";
+import { countLawOf, poissonCountLaw, type CountLaw } from "@/lib/science/threshold-free/count-laws";
 import { softenCounts } from "@/lib/science/threshold-free/soft-spins";
 import { softWeights, type SoftWeights } from "@/lib/science/threshold-free/soft-weights";
 import { poissonDensity } from "@/lib/science/stats/gamma-functions";
@@ -123,10 +123,6 @@ describe("a law of counts", () => {
     expect(Array.from(built.bright.subarray(0, 9))).toEqual(Array.from(full.bright.subarray(0, 9)));
     expect(built.bright[9]).toBeCloseTo(sum(full.bright.subarray(9)), 12);
     expect(() => countLawOf(() => 0.3, () => 0.1, 0.5, 10)).toThrow("add up to");
-  });
-
-  it("is missing where no two components were fitted", () => {
-    expect(poissonCountLaws([{ mixture: null }, { mixture: { dark: 1, bright: 9, brightWeight: 0.5 } }])[0]).toBeNull();
   });
 });
 
