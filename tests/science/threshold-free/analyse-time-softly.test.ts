@@ -91,6 +91,14 @@ describe("an evolution time read without thresholds", () => {
     law.meanError.forEach((error, i) => expect(Math.abs(error / drawn.meanError[i] - 1)).toBeLessThan(0.015));
   });
 
+  it("is the same to the last bit whatever the thread computed before, and after a structured clone", () => {
+    const task = taskOf(softShots(correlatedSpins(300, SITES, 6), OVERLAPPING, 8), { replicates: 65, interval: "bca" });
+    const first = analyseTimeSoftly(task);
+    analyseTimeSoftly(taskOf(softShots(correlatedSpins(900, SITES, 7), OVERLAPPING, 9), { timeIndex: 8, pairErrors: "replicates" }));
+    analyseTime({ ...FIXED, spins: packShots(correlatedSpins(200, SITES, 5)), readout: null });
+    expect(analyseTimeSoftly(structuredClone(task))).toEqual(first);
+  });
+
   it("finds means and correlators without bias where a threshold would misread one shot in fourteen", () => {
     const truth = correlatedSpins(60000, SITES, 9);
     const soft = analyseTimeSoftly(taskOf(softShots(truth, OVERLAPPING, 10), { replicates: 2 }));
