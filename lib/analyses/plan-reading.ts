@@ -2,7 +2,7 @@ import type { AnalysisParameters } from "@/db/schema/analyses";
 import type { DetectionSite } from "@/db/schema/detections";
 import { invalidAt, isProblem, type Problem } from "@/lib/problem";
 import type { BrightIs } from "@/lib/science/correlators/packed-spins";
-import type { ReadoutCorrection, ReadoutReplicates } from "@/lib/science/correlators/readout-correction";
+import { sitesPoorlyKnown, type ReadoutCorrection, type ReadoutReplicates } from "@/lib/science/correlators/readout-correction";
 import { poissonCountLaw } from "@/lib/science/threshold-free/count-laws";
 import { drawLawReplicates, poissonMeanErrors, type SoftMeanErrors } from "@/lib/science/threshold-free/law-replicates";
 import { softWeights } from "@/lib/science/threshold-free/soft-weights";
@@ -43,6 +43,8 @@ function softReading({ parameters, sites, countType, brightIs, seed, replicates 
   const errors = found.map((site) => site.errors).filter((error) => error !== null);
   // Detections from before the rates' errors were kept: their laws are taken as exact.
   const lawReplicates = errors.length === found.length ? drawLawReplicates(errors, brightIs, seed, replicates) : null;
+  const poor = lawReplicates === null ? [] : sitesPoorlyKnown(lawReplicates);
+  if (poor.length > 0) return invalidAt("reading", `the count distributions at site ${poor.join(", ")} are too poorly known: fitted to more shots they may be told apart`);
   return { kind: "threshold-free", weights: found.map(({ weights }) => weights), lawReplicates };
 }
 

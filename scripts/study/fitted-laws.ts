@@ -14,9 +14,10 @@ import { createRandomStream, type RandomStream } from "@/lib/science/stats/philo
 import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
 import { drawPoisson } from "@/lib/science/stats/random-variates";
 import { analyseTimeSoftly } from "@/lib/science/threshold-free/analyse-time-softly";
-import { drawLawReplicates } from "@/lib/science/threshold-free/law-replicates";
-import { poissonCountModel, readSoftly } from "@/lib/science/threshold-free/soft-reading";
+import { poissonCountLaw } from "@/lib/science/threshold-free/count-laws";
+import { drawLawReplicates, poissonMeanErrors } from "@/lib/science/threshold-free/law-replicates";
 import { softenCounts } from "@/lib/science/threshold-free/soft-spins";
+import { softWeights } from "@/lib/science/threshold-free/soft-weights";
 
 /** What is simulated in one row of the table; ⟨σ⟩ = 0. */
 interface FittedLawCase {
@@ -112,10 +113,14 @@ function byThreshold(counts: Uint16Array, fits: readonly TwoComponents[], seed: 
 }
 
 function bySoftSpins(counts: Uint16Array, fits: readonly TwoComponents[], seed: number, carriedIn: boolean): TimeResult {
-  const reading = readSoftly(fits.map(poissonCountModel), "up");
-  if (reading.kind === "refused") throw new RangeError(reading.message);
-  const spins = softenCounts(counts, counts.length / 2, 2, reading.weights);
-  const lawReplicates = carriedIn ? drawLawReplicates(reading.meanErrors, "up", seed, REPLICATES) : null;
+  const sites = fits.map((fit) => {
+    const law = poissonCountLaw(fit);
+    const value = softWeights(law, "up")?.value;
+    if (value === undefined) throw new RangeError(`Rates ${fit.dark} and ${fit.bright} cannot be told apart`);
+    return { value, errors: poissonMeanErrors(law, value, fit.darkError, fit.brightError) };
+  });
+  const spins = softenCounts(counts, counts.length / 2, 2, sites.map(({ value }) => value));
+  const lawReplicates = carriedIn ? drawLawReplicates(sites.map(({ errors }) => errors), "up", seed, REPLICATES) : null;
   return analyseTimeSoftly({ ...COMMON, seed, spins, lawReplicates });
 }
 
