@@ -1,4 +1,5 @@
 import { describe, expect, it } from "vitest";
+import { sitesPoorlyKnown } from "@/lib/science/correlators/readout-correction";
 import { planDistanceTraces } from "@/lib/science/correlators/trace-plan";
 import { mean, standardDeviation } from "@/lib/science/stats/intervals";
 import { analyseTimeSoftly, type SoftTimeTask } from "@/lib/science/threshold-free/analyse-time-softly";
@@ -48,6 +49,11 @@ describe("uncertain laws of counts", () => {
       expect(Math.abs(standardDeviation(dark) / 0.03 - 1)).toBeLessThan(0.05);
     }
     expect(drawLawReplicates(ERRORS, "up", 5, 40)).toEqual(drawLawReplicates(ERRORS, "up", 5, 40));
+  });
+
+  it("are too poorly known, by site, where a replicate's components nearly coincide", () => {
+    const wide = { dark: 0.5, bright: 0.5 };
+    expect(sitesPoorlyKnown(drawLawReplicates([wide, ERRORS[1], wide], "up", 5, 1000))).toEqual([0, 2]);
   });
 
   it("are in every replicate of means, pairs and distance averages", () => {
