@@ -5,8 +5,10 @@ import { numbersAmong, spreadOf } from "@/lib/science/studies/spread-of-repeats"
 
 /** One-sided level at which a front counts as faster than the nearest-neighbour cone. */
 const LEVEL = 0.025;
-/** With fewer fitted repeats than this p cannot reach the level. */
-const LEAST_FITTED = Math.ceil(1 / LEVEL) - 1;
+/** With fewer repeats in the comparison than this p cannot reach the level. */
+const LEAST_COMPARED = Math.ceil(1 / LEVEL) - 1;
+/** Share of repeats with a fit below which the reach is compared instead of γ. */
+const ENOUGH_FITTED = 0.5;
 const MANY_WITHOUT_FIT = 0.05;
 const MODELS = {
   xy: "the nearest-neighbour XY chain from the Néel state",
@@ -14,40 +16,64 @@ const MODELS = {
 };
 
 /**
- * Returns the comparison of an observed γ with those of the repeats: p = (1 + #{γ_null ≤ γ_observed})/(R + 1) over the R
- * repeats with a fit (Davison and Hinkley 1997, section 4.2), quantiles, one sentence, and warnings.
+ * Returns the comparison of an observed front with the repeats: p = (1 + #{as extreme})/(R + 1) (Davison and Hinkley
+ * 1997, section 4.2), quantiles, one sentence, and warnings. γ is compared over the repeats with a fit; where fewer than half have
+ * one, how far the front is seen. That choice looks at the repeats only.
  */
 export function judgeNullFront(plan: NullFrontPlan, repeats: readonly NullFrontRepeat[], observedGamma: number | null): NullFrontResult {
   const gammas = repeats.map(({ gamma }) => gamma);
-  const numbers = numbersAmong(gammas);
-  const asSmall = observedGamma === null ? 0 : numbers.filter((gamma) => gamma <= observedGamma).length;
-  const pValue = observedGamma === null || numbers.length === 0 ? null : (1 + asSmall) / (numbers.length + 1);
+  const fitted = numbersAmong(gammas).length;
   const share = (count: number) => (repeats.length === 0 ? null : count / repeats.length);
+  const statistic = fitted >= ENOUGH_FITTED * repeats.length ? ("exponent" as const) : ("reach" as const);
+  const compared = compare(statistic, plan, repeats, observedGamma);
   const result = {
     model: plan.model,
     coupling: plan.coupling,
     repeats: repeats.length,
-    fitted: numbers.length,
-    shareWithoutFit: share(repeats.length - numbers.length),
-    observed: { gamma: observedGamma, beta: observedGamma === null || observedGamma === 0 ? null : 1 / observedGamma },
+    fitted,
+    shareWithoutFit: share(repeats.length - fitted),
+    observed: { gamma: observedGamma, beta: observedGamma === null || observedGamma === 0 ? null : 1 / observedGamma, reach: plan.observedReach },
     noiseFree: plan.noiseFree,
     gamma: spreadOf(gammas),
     beta: spreadOf(repeats.map(({ beta }) => beta)),
     v_sites_per_ms: spreadOf(repeats.map(({ v_sites_per_ms }) => v_sites_per_ms)),
     gammas,
     fasterThanLinearShare: share(repeats.filter(({ verdict }) => verdict === "faster than linear").length),
-    pValue,
-    fasterThanNearestNeighbour: pValue !== null && pValue <= LEVEL,
+    reach: spreadOf(repeats.map(({ reach }) => reach)),
+    statistic,
+    pValue: compared.pValue,
+    fasterThanNearestNeighbour: compared.pValue !== null && compared.pValue <= LEVEL,
   };
-  return { ...result, sentence: sentenceOf(result, asSmall), warnings: warningsOf(plan, repeats, result) };
+  return { ...result, sentence: sentenceOf(result, compared), warnings: warningsOf(plan, repeats, result, compared) };
 }
 
 type Judged = Omit<NullFrontResult, "sentence" | "warnings">;
 
-function sentenceOf({ model, pValue, observed, fitted, fasterThanNearestNeighbour }: Judged, asSmall: number): string {
+interface Comparison {
+  /** Repeats at least as extreme as what was observed, of `of`. */
+  asExtreme: number;
+  of: number;
+  pValue: number | null;
+}
+
+function compare(statistic: "exponent" | "reach", plan: NullFrontPlan, repeats: readonly NullFrontRepeat[], observedGamma: number | null): Comparison {
+  if (observedGamma === null || repeats.length === 0) return { asExtreme: 0, of: repeats.length, pValue: null };
+  const extremes =
+    statistic === "exponent"
+      ? Array.from(numbersAmong(repeats.map(({ gamma }) => gamma)), (gamma) => gamma <= observedGamma)
+      : repeats.map(({ reach }) => reach >= plan.observedReach);
+  const asExtreme = extremes.filter((isExtreme) => isExtreme).length;
+  return { asExtreme, of: extremes.length, pValue: (1 + asExtreme) / (extremes.length + 1) };
+}
+
+function sentenceOf({ model, pValue, observed, statistic, fasterThanNearestNeighbour }: Judged, { asExtreme, of }: Comparison): string {
   if (observed.gamma === null) return "No comparison with a nearest-neighbour cone: the analysis has no power-law fit.";
-  if (pValue === null) return `No comparison with a nearest-neighbour cone: no simulated run of ${MODELS[model]} allowed a fit.`;
-  const evidence = `γ = ${fixed(observed.gamma, 2)}, and ${asSmall} of ${fitted} simulated runs of ${MODELS[model]} gave a γ as small (p = ${formatP(pValue)})`;
+  if (pValue === null) return "No comparison with a nearest-neighbour cone: no run was simulated.";
+  const runs = `${asExtreme} of ${of} simulated runs of ${MODELS[model]}`;
+  const evidence =
+    statistic === "exponent"
+      ? `γ = ${fixed(observed.gamma, 2)}, and ${runs} gave a γ as small (p = ${formatP(pValue)})`
+      : `the front is seen out to distance ${Number(observed.reach.toFixed(2))}, and within the same times ${runs} showed one that far (p = ${formatP(pValue)})`;
   return fasterThanNearestNeighbour
     ? `Faster than a nearest-neighbour cone: ${evidence}.`
     : `Not shown to be faster than a nearest-neighbour cone: ${evidence}.`;
@@ -57,26 +83,31 @@ function formatP(p: number): string {
   return p < 0.1 ? fixed(p, 3) : fixed(p, 2);
 }
 
-function warningsOf(plan: NullFrontPlan, repeats: readonly NullFrontRepeat[], { fitted, shareWithoutFit, coupling }: Judged): string[] {
+function warningsOf(plan: NullFrontPlan, repeats: readonly NullFrontRepeat[], { shareWithoutFit, coupling, statistic, reach }: Judged, { of }: Comparison): string[] {
   const warnings: string[] = [];
-  if (fitted < LEAST_FITTED) {
-    warnings.push(`With ${fitted} simulated runs that carry a fit, p cannot come below ${fixed(1 / (fitted + 1), 3)}; ${LEAST_FITTED} are needed for a verdict.`);
+  if (of < LEAST_COMPARED) {
+    warnings.push(`With ${of} simulated runs in the comparison, p cannot come below ${fixed(1 / (of + 1), 3)}; ${LEAST_COMPARED} are needed for a verdict.`);
   }
-  if (shareWithoutFit !== null && shareWithoutFit > MANY_WITHOUT_FIT) {
-    warnings.push(`${percent(shareWithoutFit)} of the simulated runs allowed no fit and are left out of the comparison.`);
+  if (statistic === "reach") {
+    warnings.push(
+      `Most simulated runs allow no fit: within the run's times the model is mostly seen out to distance ${Number((reach.median ?? 0).toFixed(2))} only. So how far the front is seen is compared, not γ; that depends on the strength of the signal too.`,
+    );
+  } else if (shareWithoutFit !== null && shareWithoutFit > MANY_WITHOUT_FIT) {
+    warnings.push(`${fixed(100 * shareWithoutFit, 0)}\u202f% of the simulated runs allowed no fit and are left out of the comparison.`);
   }
   if (coupling.source === "matched") {
     warnings.push(
-      `The run's coupling is not known: J/2π = ${coupling.j_hz.toPrecision(3)} Hz makes the model cross at the observed time at distance ${coupling.matchedDistance}. Only the front's shape is compared, not its speed.`,
+      `The run's coupling is not known: J/2π = ${formatCoupling(coupling.j_hz)} Hz makes the model cross at the observed time at distance ${coupling.matchedDistance}. Only the front's shape is compared, not its speed.`,
     );
   }
   const points = spreadOf(repeats.map(({ points: count }) => count)).median;
-  if (points !== null && points < plan.observedPoints) {
+  if (statistic === "exponent" && points !== null && points < plan.observedPoints) {
     warnings.push(`The analysis fits ${plan.observedPoints} points, a simulated run mostly ${points}: the model's signal is too weak at the other distances.`);
   }
   return warnings;
 }
 
-function percent(share: number): string {
-  return `${fixed(100 * share, 0)}\u202f%`;
+/** Three digits, without an exponent. */
+function formatCoupling(j_hz: number): string {
+  return String(Number(j_hz.toPrecision(3)));
 }

@@ -24,8 +24,10 @@ export interface NullFrontRepeat {
   gamma: number | null;
   beta: number | null;
   v_sites_per_ms: number | null;
-  /** Points that entered the fits. */
+  /** Points that can enter a fit. */
   points: number;
+  /** The farthest distance of such a point, 0 without any. */
+  reach: number;
   verdict: string;
 }
 
@@ -46,7 +48,7 @@ export interface NullFrontResult {
   fitted: number;
   /** Null without repeats. */
   shareWithoutFit: number | null;
-  observed: { gamma: number | null; beta: number | null };
+  observed: { gamma: number | null; beta: number | null; reach: number };
   noiseFree: NoiseFreeFront;
   /** 2.5, 25, 50, 75 and 97.5 % quantiles. */
   gamma: SpreadOfRepeats;
@@ -56,7 +58,17 @@ export interface NullFrontResult {
   gammas: (number | null)[];
   /** Share of repeats in which the extractor's own verdict is "faster than linear"; null without repeats. */
   fasterThanLinearShare: number | null;
-  /** (1 + #{γ_null ≤ γ_observed}) / (fitted + 1); null without an observed γ or a fitted repeat. */
+  /** The farthest distance with a usable crossing. */
+  reach: SpreadOfRepeats;
+  /**
+   * What is compared, chosen by the repeats alone: `exponent`, γ, where most carry a fit; else `reach`, the farthest distance at
+   * which a crossing is seen within the run's times, since a model that is seen at two distances has no exponent.
+   */
+  statistic: "exponent" | "reach";
+  /**
+   * `exponent`: (1 + #{γ_null ≤ γ_observed})/(fitted + 1). `reach`: (1 + #{reach_null ≥ reach_observed})/(repeats + 1).
+   * Null without an observed γ, or without repeats.
+   */
   pValue: number | null;
   /** p ≤ 0.025, one-sided. */
   fasterThanNearestNeighbour: boolean;

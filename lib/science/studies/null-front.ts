@@ -1,5 +1,6 @@
 import { isStudyRefusal, refuseStudy, type StudyRefusal } from "@/lib/science/studies/study-refusal";
 import { sitesBeyondCorrection } from "@/lib/science/correlators/readout-correction";
+import type { FrontPoint } from "@/lib/science/front/front-result";
 import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
 import { frontNumbers } from "@/lib/science/studies/front-numbers";
 import { couplingOf } from "@/lib/science/studies/match-coupling";
@@ -16,6 +17,8 @@ export interface NullFrontPlan {
   noiseFree: NoiseFreeFront;
   /** Points the studied analysis fitted. */
   observedPoints: number;
+  /** The farthest of them. */
+  observedReach: number;
 }
 
 const LEAST_SITES = 4;
@@ -46,6 +49,7 @@ export function planNullFront(input: NullFrontInput): NullFrontPlan | StudyRefus
       points: front.points.map(({ label, distance, time_us, fitted }) => ({ label, distance, time_us, fitted })),
     },
     observedPoints: observedPoints.filter(({ fitted }) => fitted).length,
+    observedReach: reachOf(observedPoints),
   };
 }
 
@@ -67,5 +71,10 @@ function whyNoNullFront({ positions, jMax_hz, readoutErrors, readoutCorrected }:
 /** Returns what the extractor reads from repeat number `repeat` (whole, from 0), the same whichever thread runs it. */
 export function nullFrontRepeat(plan: NullFrontPlan, repeat: number): NullFrontRepeat {
   const { front } = analyseSimulatedRun(plan.run, repeat);
-  return { ...frontNumbers(front), points: front.points.filter(({ fitted }) => fitted).length, verdict: front.verdict };
+  const points = front.points.filter(({ fitted }) => fitted).length;
+  return { ...frontNumbers(front), points, reach: reachOf(front.points), verdict: front.verdict };
+}
+
+function reachOf(points: readonly FrontPoint[]): number {
+  return Math.max(0, ...points.map(({ fitted, distance }) => (fitted ? distance : 0)));
 }

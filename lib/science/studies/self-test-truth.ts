@@ -2,19 +2,12 @@ import { findCrossing } from "@/lib/science/front/crossing";
 import { createCrossingScratch } from "@/lib/science/front/crossing-kernel";
 import { listPairs, pairCount } from "@/lib/science/correlators/pairs";
 import { siteDistance } from "@/lib/science/correlators/trace-plan";
+import type { FrontRule } from "@/lib/science/front/front-rule";
+import type { TraceSet } from "@/lib/science/front/trace-set";
+import { mean } from "@/lib/science/stats/intervals";
 import { median } from "@/lib/science/stats/quantiles";
+import { halfWayShare, plateauOf, riseOfSwing, swingAt, type Signal, type SignalShape } from "@/lib/science/studies/signal-shape";
 import type { SelfTestInput } from "@/lib/science/studies/self-test-input";
-
-/** The smooth signal of one trace or pair: zero, a rise through the level on the fitted front, a maximum, half of it later. */
-interface Signal {
-  /** Signed. */
-  amplitude: number;
-  /** The level as a share of the amplitude. */
-  levelShare: number;
-  front_us: number;
-  /** From the front to the maximum. */
-  rise_us: number;
-}
 
 /** The power law d = a τ^γ⁻¹ that the truth follows. */
 export interface TruthLaw {
@@ -28,60 +21,86 @@ const SAME_DISTANCE = 1e-6;
 const NOISE_MAXIMUM = 2;
 
 /**
- * Returns the correlators `[k][pair]` that a self-test asks for: pairs of a trace have its amplitude, rise and level
- * share, with the crossing on the fitted power law; other pairs what lies between the traces nearest in distance.
+ * Returns the correlators `[k][pair]` that a self-test may ask for, in two forms: signals that swing up and down, and
+ * signals that rise for good. Pairs of a trace have its amplitude, rise and level share, with the crossing on the fitted power law;
+ * other pairs what lies between the traces nearest in distance.
  */
-export function wantedCorrelators(input: SelfTestInput, law: TruthLaw): Float64Array[] {
+export function wantedCorrelators(input: SelfTestInput, law: TruthLaw): { swing: Float64Array[]; plateau: Float64Array[] } {
+  const signals = signalsOfPairs(input, law);
+  const end_us = input.times_us[input.times_us.length - 1];
+  const sample = (forms: ((time_us: number) => number)[]) =>
+    Array.from(input.times_us, (time) => Float64Array.from(forms, (form) => form(time)));
+  return {
+    swing: sample(signals.map((signal) => (time_us) => swingAt(signal, time_us))),
+    plateau: sample(signals.map((signal) => plateauOf(signal, end_us, law.gamma))),
+  };
+}
+
+function signalsOfPairs(input: SelfTestInput, law: TruthLaw): Signal[] {
   const signals = traceSignals(input, law);
   const sites = input.positions.x.length;
   const pairs = listPairs(sites);
-  const traceOf = traceOfPairs(input, pairCount(sites));
   const others = signalByDistance(input, signals);
-  const ofPair = Array.from(traceOf, (trace, pair) => {
+  return Array.from(traceOfPairs(input, pairCount(sites)), (trace, pair) => {
     const distance = siteDistance(input.positions, pairs[2 * pair], pairs[2 * pair + 1]);
     const signal = trace >= 0 ? signals[trace] : others(distance);
-    return { ...signal, front_us: frontTime_us(law, distance) };
+    const front_us = frontTime_us(law, distance);
+    // A maximum beyond the window would leave less than the amplitude inside, and a level that is crossed too early.
+    const room_us = input.times_us[input.times_us.length - 1] - front_us;
+    return { ...signal, front_us, rise_us: room_us > 0 ? Math.min(signal.rise_us, room_us) : signal.rise_us };
   });
-  return Array.from(input.times_us, (time) => Float64Array.from(ofPair, (signal) => signalAt(signal, time)));
 }
 
-/** τ = (d/a)^γ */
-function frontTime_us({ a, gamma }: TruthLaw, distance: number): number {
+/** Returns τ = (d/a)^γ, µs. */
+export function frontTime_us({ a, gamma }: TruthLaw, distance: number): number {
   return Math.exp(gamma * Math.log(distance / a));
-}
-
-function signalAt({ amplitude, levelShare, front_us, rise_us }: Signal, time_us: number): number {
-  const start = Math.acos(1 - 2 * levelShare) / Math.PI;
-  const phase = start + ((1 - start) * (time_us - front_us)) / rise_us;
-  if (phase <= 0) return 0;
-  const swing = (1 - Math.cos(Math.PI * Math.min(2, phase))) / 2;
-  return phase <= 1 ? amplitude * swing : (amplitude * (1 + swing)) / 2;
 }
 
 function traceSignals({ observedTraces, rule, times_us }: SelfTestInput, law: TruthLaw): Signal[] {
   const scratch = createCrossingScratch(times_us.length);
-  const times = times_us.length;
   const found = observedTraces.labels.map((_, q) => {
-    const { maximum, level, status, peakTimeIndex } = findCrossing(observedTraces, q, rule, scratch);
+    const crossing = findCrossing(observedTraces, q, rule, scratch);
+    const { maximum, level, status, peakTimeIndex } = crossing;
     const front_us = frontTime_us(law, observedTraces.distances[q]);
-    if (peakTimeIndex < 0) return { amplitude: 0, levelShare: 0.1, front_us, rise_us: NaN };
-    const at = q * times + peakTimeIndex;
+    if (peakTimeIndex < 0) return { amplitude: 0, levelShare: 0.1, front_us, rise_us: NaN, tailShare: 1, halfWayRatio: NaN };
+    const at = q * times_us.length + peakTimeIndex;
     const size = status === "unresolved" ? Math.max(0, maximum - NOISE_MAXIMUM * (observedTraces.error[at] || 0)) : maximum;
-    const rise_us = status === "resolved" ? times_us[peakTimeIndex] - front_us : NaN;
-    return { amplitude: Math.sign(observedTraces.value[at]) * size, levelShare: shareWithin(level / maximum), front_us, rise_us };
+    const levelShare = shareWithin(level / maximum);
+    // Half-way from the level to the maximum the noise disturbs least; the maximum's own time is mostly noise.
+    const middle: FrontRule = { ...rule, rule: "fraction-of-max", level: halfWayShare(levelShare), method: "isotonic" };
+    const half_us = findCrossing(observedTraces, q, middle, scratch).time_us;
+    const isResolved = status === "resolved";
+    return {
+      amplitude: Math.sign(observedTraces.value[at]) * size,
+      levelShare,
+      front_us,
+      rise_us: isResolved ? riseOfSwing(half_us - crossing.time_us, levelShare) : NaN,
+      tailShare: tailOf(observedTraces, q, peakTimeIndex),
+      halfWayRatio: isResolved ? half_us / crossing.time_us : NaN,
+    };
   });
   return withUsableRises(found, median(Array.from(times_us.subarray(1), (time, k) => time - times_us[k])));
+}
+
+/** The mean after the maximum as a share of it, 1 where nothing comes after. */
+function tailOf({ value, times_us }: TraceSet, trace: number, peakTimeIndex: number): number {
+  const row = trace * times_us.length;
+  const after = value.subarray(row + peakTimeIndex + 1, row + times_us.length).filter((sample) => Number.isFinite(sample));
+  if (after.length === 0) return 1;
+  return Math.min(1, Math.max(0, mean(after) / value[row + peakTimeIndex]));
 }
 
 function shareWithin(share: number): number {
   return Number.isFinite(share) ? Math.min(0.9, Math.max(0.01, share)) : 0.1;
 }
 
-/** A maximum before the fitted front, or next to it, says nothing of the rise: the other traces' median stands in. */
+/** A rise within one step of time, or none, says nothing: the other traces' median stands in. */
 function withUsableRises(signals: Signal[], step_us: number): Signal[] {
-  const usable = signals.map(({ rise_us }) => rise_us).filter((rise) => rise >= step_us);
-  const typical = usable.length === 0 ? 2 * step_us : median(usable);
-  return signals.map((signal) => (signal.rise_us >= step_us ? signal : { ...signal, rise_us: typical }));
+  const usable = signals.filter(({ rise_us }) => rise_us >= step_us);
+  const rise_us = usable.length === 0 ? 2 * step_us : median(usable.map((signal) => signal.rise_us));
+  // One ratio for all: a plateau's correlations exist together when they differ by their time scale only.
+  const halfWayRatio = usable.length === 0 ? 2 : median(usable.map((signal) => signal.halfWayRatio));
+  return signals.map((signal) => ({ ...signal, rise_us: signal.rise_us >= step_us ? signal.rise_us : rise_us, halfWayRatio }));
 }
 
 function traceOfPairs({ traces }: SelfTestInput, count: number): Int32Array {
@@ -91,8 +110,6 @@ function traceOfPairs({ traces }: SelfTestInput, count: number): Int32Array {
   });
   return traceOf;
 }
-
-type SignalShape = Omit<Signal, "front_us">;
 
 /** Straight lines in distance between the traces' signals, equal distances averaged, constant beyond the ends. */
 function signalByDistance({ traces }: SelfTestInput, signals: Signal[]): (distance: number) => SignalShape {
@@ -114,15 +131,19 @@ function signalByDistance({ traces }: SelfTestInput, signals: Signal[]): (distan
 }
 
 function meanShape(members: Signal[]): SignalShape {
-  const mean = (of: (signal: Signal) => number) => members.reduce((sum, signal) => sum + of(signal), 0) / members.length;
-  return { amplitude: mean((s) => s.amplitude), levelShare: mean((s) => s.levelShare), rise_us: mean((s) => s.rise_us) };
+  return shapeOf((field) => mean(members.map((signal) => signal[field])));
 }
 
 function blend(left: SignalShape, right: SignalShape, share: number): SignalShape {
-  const between = (a: number, b: number) => a + share * (b - a);
+  return shapeOf((field) => left[field] + share * (right[field] - left[field]));
+}
+
+function shapeOf(value: (field: keyof SignalShape) => number): SignalShape {
   return {
-    amplitude: between(left.amplitude, right.amplitude),
-    levelShare: between(left.levelShare, right.levelShare),
-    rise_us: between(left.rise_us, right.rise_us),
+    amplitude: value("amplitude"),
+    levelShare: value("levelShare"),
+    rise_us: value("rise_us"),
+    tailShare: value("tailShare"),
+    halfWayRatio: value("halfWayRatio"),
   };
 }

@@ -1,11 +1,14 @@
 import { sitesBeyondCorrection } from "@/lib/science/correlators/readout-correction";
+import { findCrossing } from "@/lib/science/front/crossing";
+import { createCrossingScratch } from "@/lib/science/front/crossing-kernel";
 import { isNoFit, type FrontPoint, type FrontResult } from "@/lib/science/front/front-result";
+import { mean } from "@/lib/science/stats/intervals";
 import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
 import { frontNumbers } from "@/lib/science/studies/front-numbers";
 import type { SelfTestInput } from "@/lib/science/studies/self-test-input";
 import type { IntervalEstimate, SelfTestRepeat, SelfTestTruth } from "@/lib/science/studies/self-test-result";
-import { wantedCorrelators, type TruthLaw } from "@/lib/science/studies/self-test-truth";
-import { analyseSimulatedRun, readNoiseFree, type SimulatedRun } from "@/lib/science/studies/simulated-run";
+import { frontTime_us, wantedCorrelators, type TruthLaw } from "@/lib/science/studies/self-test-truth";
+import { analyseSimulatedRun, exactTraceSet, readNoiseFree, type SimulatedRun } from "@/lib/science/studies/simulated-run";
 import { refuseStudy, type StudyRefusal } from "@/lib/science/studies/study-refusal";
 import { gaussianLawOf } from "@/lib/science/theory/gaussian-law";
 
@@ -39,21 +42,56 @@ export function planSelfTest(input: SelfTestInput): SelfTestPlan | StudyRefusal 
   if (law === null) return refuseStudy("analysis", "A self-test needs an analysis with a fitted power law whose γ is above zero.");
   const refused = input.readoutErrors !== null && input.readoutCorrected ? sitesBeyondCorrection(input.readoutErrors) : [];
   if (refused.length > 0) return refuseStudy("readoutErrors", `Sites ${refused.join(", ")} cannot be corrected for readout.`);
-  const sites = input.positions.x.length;
-  const surrogates = wantedCorrelators(input, law).map((correlator, k) => {
-    const mean = input.means.subarray(k * sites, (k + 1) * sites).map(withinMargin);
-    return gaussianLawOf({ mean, correlator });
-  });
-  // Without correction the run's means and traces are those of the spins as read: their flips are in them already.
-  const readoutErrors = input.readoutCorrected ? input.readoutErrors : null;
-  const run: SimulatedRun = { ...analysisOf(input), readoutErrors, laws: surrogates.map((surrogate) => surrogate.law), purpose: RANDOM_PURPOSES.selfTest };
-  const { front } = readNoiseFree(run, surrogates.map(({ correlator }) => correlator));
-  const changes = surrogates.map(({ largestChange }) => largestChange);
+  const { run, correlators, changes } = nearestRun(input, law);
+  const { front } = readNoiseFree(run, correlators);
   return {
     run,
     front: trueFrontOf(front, input.observedFront.points),
     truth: { fittedGamma: law.gamma, largestChange: Math.max(0, ...changes), timesChanged: changes.filter((change) => change > CHANGED).length },
   };
+}
+
+interface Candidate {
+  run: SimulatedRun;
+  /** `[k][pair]`, as simulated. */
+  correlators: Float64Array[];
+  /** `[k]`, how far they were moved from what was asked. */
+  changes: number[];
+}
+
+/** Of the two forms of signals, the one whose crossings, as simulated, keep nearer to the fitted front. */
+function nearestRun(input: SelfTestInput, law: TruthLaw): Candidate {
+  const wanted = wantedCorrelators(input, law);
+  const swing = candidateOf(input, wanted.swing);
+  const plateau = candidateOf(input, wanted.plateau);
+  return misfitOf(plateau, input, law) < misfitOf(swing, input, law) ? plateau : swing;
+}
+
+function candidateOf(input: SelfTestInput, wanted: Float64Array[]): Candidate {
+  const sites = input.positions.x.length;
+  const surrogates = wanted.map((correlator, k) => {
+    const mean = input.means.subarray(k * sites, (k + 1) * sites).map(withinMargin);
+    return gaussianLawOf({ mean, correlator });
+  });
+  // Without correction the run's means and traces are those of the spins as read: their flips are in them already.
+  const readoutErrors = input.readoutCorrected ? input.readoutErrors : null;
+  return {
+    run: { ...analysisOf(input), readoutErrors, laws: surrogates.map((surrogate) => surrogate.law), purpose: RANDOM_PURPOSES.selfTest },
+    correlators: surrogates.map(({ correlator }) => correlator),
+    changes: surrogates.map(({ largestChange }) => largestChange),
+  };
+}
+
+/** Mean |ln τ/τ_front| over the traces that the studied analysis fitted; a crossing that is not there counts as 1. */
+function misfitOf({ run, correlators }: Candidate, { observedFront }: SelfTestInput, law: TruthLaw): number {
+  const exact = exactTraceSet(run, correlators);
+  const scratch = createCrossingScratch(run.times_us.length);
+  const misfits = observedFront.points.flatMap(({ fitted, distance }, trace) => {
+    if (!fitted) return [];
+    const miss = Math.abs(Math.log(findCrossing(exact, trace, run.rule, scratch).time_us / frontTime_us(law, distance)));
+    return Number.isFinite(miss) ? miss : 1;
+  });
+  return misfits.length === 0 ? 0 : mean(misfits);
 }
 
 function fittedLaw({ powerLaw }: FrontResult): TruthLaw | null {

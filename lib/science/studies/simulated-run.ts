@@ -125,3 +125,18 @@ export function exactTraces(run: SimulatedAnalysis, correlators: readonly Float6
   });
   return value;
 }
+
+/** Returns the exact traces as the front reads them, without errors and replicates. */
+export function exactTraceSet(run: SimulatedAnalysis, correlators: readonly Float64Array[]): TraceSet {
+  const value = exactTraces(run, correlators);
+  return {
+    labels: run.traces.labels,
+    distances: run.traces.distances,
+    times_us: run.times_us,
+    shotsPerTime: run.shotsPerTime,
+    value,
+    error: new Float64Array(value.length),
+    replicateCount: 0,
+    replicates: new Float64Array(0),
+  };
+}

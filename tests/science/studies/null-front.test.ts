@@ -1,6 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { listPairs } from "@/lib/science/correlators/pairs";
 import { planDistanceTraces, planReferenceTraces } from "@/lib/science/correlators/trace-plan";
+import type { FrontPoint } from "@/lib/science/front/front-result";
 import { DEFAULT_FRONT_FIT_OPTIONS, DEFAULT_FRONT_RULE } from "@/lib/science/front/front-rule";
 import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
 import { frontNumbers } from "@/lib/science/studies/front-numbers";
@@ -50,6 +51,10 @@ function planOf(changes: Partial<NullFrontInput> = {}): NullFrontPlan {
 
 function repeatsOf(plan: NullFrontPlan, count: number): NullFrontRepeat[] {
   return Array.from({ length: count }, (_, repeat) => nullFrontRepeat(plan, repeat));
+}
+
+function observedPoint(distance: number, time_us: number | null): FrontPoint {
+  return { label: `d = ${distance}`, distance, time_us, fitted: true, error_us: 1, low_us: null, high_us: null, status: "resolved", failedShare: 0, level: null, warnings: [] };
 }
 
 /** Kolmogorov's distance of values from the uniform law on (0, 1). */
@@ -141,22 +146,34 @@ describe("the long-range XY quench, J_ij = J₀/|i − j|, held against the null
   });
 });
 
+describe("a run so short that the nearest-neighbour chain is seen at two distances only", () => {
+  const points = [1, 2, 3, 4, 5].map((distance) => observedPoint(distance, 20 * distance ** 0.3));
+  /** J₀t to 0.45: 4Jt to 1.8. */
+  const times = Float64Array.from({ length: 16 }, (_, k) => ((0.03 + 0.028 * k) / (2 * Math.PI * 1000)) * 1e6);
+  const plan = planOf({ times_us: times, shotsPerTime: new Float64Array(16).fill(500), observedPoints: points });
+  const repeats = repeatsOf(plan, 60);
+
+  it("is compared by how far its front is seen", () => {
+    const judged = judgeNullFront(plan, repeats, 0.3);
+    expect(judged.statistic).toBe("reach");
+    expect(judged.observed.reach).toBe(5);
+    expect(judged.reach.high).toBeLessThan(4);
+    expect(judged.fasterThanNearestNeighbour).toBe(true);
+    expect(judged.sentence).toMatch(/^Faster than a nearest-neighbour cone: the front is seen out to distance 5, and within the same times 0 of 60/);
+    expect(judged.warnings.some((warning) => warning.startsWith("Most simulated runs allow no fit"))).toBe(true);
+  });
+
+  it("is not called faster when its front is seen no farther than the model's", () => {
+    const near = judgeNullFront({ ...plan, observedReach: 2 }, repeats, 0.3);
+    expect(near.statistic).toBe("reach");
+    expect(near.fasterThanNearestNeighbour).toBe(false);
+  });
+});
+
 describe("the coupling of the null front", () => {
   it("is matched so that the model crosses where the nearest observed point does", () => {
     const known = planOf();
-    const points = known.noiseFree.points.map(({ label, distance, time_us, fitted }) => ({
-      label,
-      distance,
-      time_us,
-      fitted,
-      error_us: 1,
-      low_us: null,
-      high_us: null,
-      status: "resolved" as const,
-      failedShare: 0,
-      level: null,
-      warnings: [],
-    }));
+    const points = known.noiseFree.points.map(({ distance, time_us, fitted }) => ({ ...observedPoint(distance, time_us), fitted }));
     const { coupling } = planOf({ jMax_hz: null, observedPoints: points });
     expect(coupling).toMatchObject({ source: "matched", matchedDistance: 1 });
     expect(coupling.j_hz / 1000).toBeCloseTo(1, 2);

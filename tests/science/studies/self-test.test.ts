@@ -2,6 +2,7 @@ import { describe, expect, it } from "vitest";
 import { planDistanceTraces, planReferenceTraces } from "@/lib/science/correlators/trace-plan";
 import { analyseFront } from "@/lib/science/front/analyse-front";
 import { DEFAULT_FRONT_FIT_OPTIONS, DEFAULT_FRONT_RULE } from "@/lib/science/front/front-rule";
+import type { TraceSet } from "@/lib/science/front/trace-set";
 import { judgeSelfTest } from "@/lib/science/studies/judge-self-test";
 import { planSelfTest, selfTestRepeat, type SelfTestPlan } from "@/lib/science/studies/self-test";
 import type { SelfTestInput } from "@/lib/science/studies/self-test-input";
@@ -99,7 +100,7 @@ describe("the self-test of a well-behaved run", () => {
 describe("the truth of a self-test", () => {
   it("gives every pair the signal of its trace, also with reference traces and other pairs between them", () => {
     const input = inputOf(coneOf(1), { traces: planReferenceTraces(chain, 0) });
-    const wanted = wantedCorrelators(input, { a: 0.01, gamma: 1 });
+    const { swing: wanted } = wantedCorrelators(input, { a: 0.01, gamma: 1 });
     expect(wanted).toHaveLength(TIMES);
     // At 420 µs the front is at 4.2 sites: pairs at distance 6 and 7 show nothing yet, those at distance 1 are near theirs.
     expect(wanted[16][5]).toBe(0);
@@ -108,6 +109,22 @@ describe("the truth of a self-test", () => {
     // Sites 3 and 4 are a pair of no trace: their signal is that of distance 1.
     const pairOf34 = 7 + 6 + 5;
     expect(wanted[16][pairOf34]).toBeCloseTo(wanted[16][0], 12);
+  });
+
+  it("rises for good where the run's traces do, and keeps to the fitted front", () => {
+    // A Gaussian in distance that widens in time reaches a tenth of its value everywhere at τ = 70 d, in the noise of a cone without signal.
+    const noise = measureCone({ ...coneOf(1), amplitude: 0 }, 200, 4);
+    const { times_us } = noise;
+    const signal = (trace: number, k: number) => 0.6 * Math.exp(-Math.LN10 * ((70 * (1 + trace)) / times_us[k]) ** 2);
+    const observedTraces: TraceSet = {
+      ...noise,
+      value: noise.value.map((value, at) => value + signal(Math.floor(at / TIMES), at % TIMES)),
+      replicates: noise.replicates.map((value, at) => value + signal(Math.floor(at / 200) % 7, Math.floor(at / 1400))),
+    };
+    const { front: observedFront } = analyseFront(observedTraces, DEFAULT_FRONT_RULE);
+    const { truth, front } = planOf(inputOf(coneOf(1), { observedTraces, observedFront }));
+    expect(truth.largestChange).toBeLessThan(0.05);
+    expect(Math.abs((front.gamma ?? NaN) - truth.fittedGamma)).toBeLessThan(0.03);
   });
 
   it("that no spins can have is moved, and the result says so", () => {
