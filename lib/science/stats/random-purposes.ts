@@ -17,6 +17,8 @@ export const RANDOM_PURPOSES = {
   nullFront: 6,
   /** Simulated repeats of an analysis; index is the time k, replicate the repeat. */
   selfTest: 7,
+  /** The study of the coverage of intervals; index is the row of its table or the time k, replicate the repeat. */
+  coverageStudy: 8,
   /** Where the runs of consecutive shots begin that a bootstrap replicate holds; index is the time k. */
   bootstrapRuns: 9,
 } as const;
