@@ -195,3 +195,28 @@ function tableRow({ dark, bright, readoutError, mean, correlator, shots, thresho
   const coverages = [threshold, soft, likelihood].map(({ coverage }) => percent(coverage));
   return `| ${[`${dark} / ${bright}`, percent(readoutError), mean, correlator, shots, threshold.rms.toFixed(4), ratio(soft), ratio(likelihood), ...coverages].join(" | ")} |`;
 }
+
+/** Returns the rows as a shorter Markdown table: one line for each pair of rates and ⟨σ⟩, with the range over C and M and the mean coverage. */
+export function thresholdFreeSummary(rows: readonly ThresholdFreeRow[]): string {
+  const head = [
+    "| λ dark / bright | readout error | ⟨σ⟩ | RMS soft / threshold | RMS likelihood / threshold | coverage threshold | soft | likelihood |",
+    "|---|---|---|---|---|---|---|---|",
+  ];
+  const groups = new Map<string, ThresholdFreeRow[]>();
+  for (const row of rows) {
+    const key = `${row.dark} / ${row.bright}, ${row.mean}`;
+    groups.set(key, [...(groups.get(key) ?? []), row]);
+  }
+  return [...head, ...Array.from(groups.values(), summaryRow)].join("\n");
+}
+
+function summaryRow(rows: readonly ThresholdFreeRow[]): string {
+  const [{ dark, bright, readoutError, mean }] = rows;
+  const range = (name: "soft" | "likelihood") => {
+    const ratios = rows.map((row) => row[name].rms / row.threshold.rms);
+    return `${Math.min(...ratios).toFixed(3)} to ${Math.max(...ratios).toFixed(3)}`;
+  };
+  const coverage = (name: "threshold" | "soft" | "likelihood") => `${((100 * rows.reduce((sum, row) => sum + row[name].coverage, 0)) / rows.length).toFixed(1)} %`;
+  const cells = [`${dark} / ${bright}`, `${(100 * readoutError).toFixed(1)} %`, mean, range("soft"), range("likelihood"), coverage("threshold"), coverage("soft"), coverage("likelihood")];
+  return `| ${cells.join(" | ")} |`;
+}

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { thresholdFreeStudy, thresholdFreeTable } from "@/scripts/study/threshold-free";
+import { thresholdFreeStudy, thresholdFreeSummary, thresholdFreeTable } from "@/scripts/study/threshold-free";
 
 const CLEAR = { dark: 1, bright: 12, mean: 0, correlator: 0.1, shots: 250 };
 const OVERLAPPING = { dark: 4, bright: 8, mean: -0.6, correlator: 0, shots: 250 };
@@ -23,6 +23,12 @@ describe("the study of estimates without thresholds", () => {
       expect(Math.abs(threshold.coverage - 0.95)).toBeLessThan(0.044);
       expect(Math.abs(soft.coverage - 0.95)).toBeLessThan(0.044);
     }
+  });
+
+  it("is summed up by rates and ⟨σ⟩, with the range over the rest", () => {
+    const [, , line, ...rest] = thresholdFreeSummary([rows[1], { ...rows[1], shots: 500, soft: rows[1].threshold }]).split("\n");
+    expect(rest).toEqual([]);
+    expect(line).toContain(`| 4 / 8 | 20.3 % | -0.6 | ${(rows[1].soft.rms / rows[1].threshold.rms).toFixed(3)} to 1.000 |`);
   });
 
   it("is the same again under the same seed, and prints one line a row", () => {
