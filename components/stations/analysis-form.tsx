@@ -4,9 +4,22 @@ import { useRouter } from "next/navigation";
 import { useState, type FormEvent } from "react";
 import { siteText } from "@/components/charts/site-text";
 import { ApiProblem, sendJson } from "@/components/data/fetch-json";
+import { ChoiceField } from "@/components/forms/choice-field";
 import { FormField } from "@/components/forms/form-field";
 import { ProblemNotice } from "@/components/shell/problem-notice";
 import type { ProblemPlace } from "@/lib/problem";
+import { analysisFields } from "./analysis-fields";
+import { AnalysisMoreChoices } from "./analysis-more-choices";
+
+const METHODS = [
+  ["isotonic", "isotonic regression"],
+  ["last-upcrossing", "last upcrossing before the maximum"],
+  ["first", "first samples at the level"],
+] as const;
+const READINGS = [
+  ["threshold", "thresholds"],
+  ["threshold-free", "count distributions, no threshold"],
+] as const;
 
 interface AnalysisFormProps {
   runId: string;
@@ -42,51 +55,24 @@ export function AnalysisForm({ runId, siteNames, detections, onStarted }: Analys
   return (
     <form onSubmit={start}>
       <fieldset disabled={busy} className="grid grid-cols-1 gap-4 sm:grid-cols-2 lg:grid-cols-4">
-        <label>
-          <span className="mb-1 block font-[550]">Detection</span>
-          <select className="field" value={detectionId} onChange={(event) => setDetectionId(event.target.value)}>
-            {detections.map((candidate) => (
-              <option key={candidate.id} value={candidate.id}>
-                {[`detection ${candidate.number}`, candidate.method, candidate.label].filter(Boolean).join(" · ")}
-              </option>
-            ))}
-          </select>
-        </label>
-        <label>
-          <span className="mb-1 block font-[550]">Traces by</span>
-          <select name="traces" className="field" defaultValue="0">
-            <option value="distance">distance, averaged over pairs</option>
-            {siteNames.map((name, site) => (
-              <option key={site} value={site}>
-                reference {siteText(name)}
-              </option>
-            ))}
-          </select>
-        </label>
+        <ChoiceField
+          label="Detection"
+          value={detectionId}
+          onChange={(event) => setDetectionId(event.target.value)}
+          choices={detections.map(({ id, number, method, label }) => [id, [`detection ${number}`, method, label].filter(Boolean).join(" · ")])}
+        />
+        <ChoiceField
+          label="Traces by"
+          name="traces"
+          defaultValue="0"
+          choices={[["distance", "distance, averaged over pairs"], ...siteNames.map((name, site) => [String(site), `reference ${siteText(name)}`] as const)]}
+        />
         <FormField label="Level f of the maximum" name="level" inputMode="decimal" defaultValue="0.1" error={errorAt("front.level")} />
-        <label>
-          <span className="mb-1 block font-[550]">Crossing by</span>
-          <select name="method" className="field" defaultValue="isotonic">
-            <option value="isotonic">isotonic regression</option>
-            <option value="first">first samples at the level</option>
-          </select>
-        </label>
+        <ChoiceField label="Crossing by" name="method" choices={METHODS} />
+        <ChoiceField label="Spins by" name="reading" choices={READINGS} error={errorAt("reading")} />
         <FormField label="Bootstrap replicates B" name="replicates" inputMode="numeric" defaultValue="1000" error={errorAt("bootstrap.replicates")} />
         <FormField label="Seed" name="seed" inputMode="numeric" defaultValue="1" error={errorAt("bootstrap.seed")} />
-        <label>
-          <span className="mb-1 block font-[550]">95 % intervals</span>
-          <select name="interval" className="field" defaultValue="percentile">
-            <option value="percentile">percentile</option>
-            <option value="bca">BCa</option>
-          </select>
-        </label>
-        <label>
-          <span className="mb-1 block font-[550]">Estimator of C</span>
-          <select name="estimator" className="field" defaultValue="plug-in">
-            <option value="plug-in">plug-in</option>
-            <option value="unbiased">unbiased, M/(M − 1)</option>
-          </select>
-        </label>
+        <AnalysisMoreChoices errorAt={errorAt} />
         <label className="flex min-h-9 items-center gap-2 sm:col-span-2">
           <input type="checkbox" name="readoutCorrection" className="size-4 accent-(--ink)" disabled={!detection?.hasRates} />
           correct for readout errors{!detection?.hasRates && " (this detection has no error rates)"}
@@ -104,17 +90,4 @@ export function AnalysisForm({ runId, siteNames, detections, onStarted }: Analys
       )}
     </form>
   );
-}
-
-function analysisFields(form: FormData, detectionId: string): Record<string, unknown> {
-  const text = (name: string) => String(form.get(name) ?? "").trim();
-  const number = (name: string) => (Number.isFinite(Number(text(name))) && text(name) !== "" ? Number(text(name)) : text(name));
-  return {
-    detectionId,
-    readoutCorrection: form.get("readoutCorrection") === "on",
-    estimator: text("estimator"),
-    bootstrap: { replicates: number("replicates"), seed: number("seed"), interval: text("interval") },
-    traces: text("traces") === "distance" ? { kind: "distance" } : { kind: "reference", site: Number(text("traces")) },
-    front: { level: number("level"), method: text("method") },
-  };
 }

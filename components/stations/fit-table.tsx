@@ -63,6 +63,14 @@ function FitColumn({ title, law, fit, swatch, children }: FitColumnProps) {
                 {plainNumber(fit.chi2, 3)} / {fit.dof}, p = {plainNumber(fit.pValue, 2)}
               </td>
             </tr>
+            <tr className="label">
+              <th scope="row" className="py-0.5 font-normal">
+                AICc, BIC
+              </th>
+              <td className="text-right" colSpan={2}>
+                {plainNumber(fit.aicc, 3)}, {plainNumber(fit.bic, 3)}
+              </td>
+            </tr>
           </tbody>
         </table>
       )}

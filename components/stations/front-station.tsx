@@ -9,6 +9,7 @@ import { useUrlState } from "@/components/shell/use-url-state";
 import { isNoFit, type FrontResult } from "@/lib/science/front/front-result";
 import { ExportLinks } from "./export-links";
 import { FitTable } from "./fit-table";
+import { InfluenceTable } from "./influence-table";
 import { fitCurves, mapCrossings, mapCurves, traceLine, traceMap, traceName, type TracesAnswer } from "./trace-view";
 import { VerdictBlock } from "./verdict-block";
 import { VelocityTable } from "./velocity-table";
@@ -65,7 +66,10 @@ export function FrontStation({ analysisId, siteNames, traces, front, comparison 
         <ResidualsChart title="Residuals" caption="power law filled, straight line hollow" residuals={residualsOf(front)} height={250} />
         <VelocityTable front={front} />
       </div>
-      {front.unresolved.length > 0 && <UnresolvedList front={front} />}
+      <div className="mt-7 grid grid-cols-1 gap-x-8 gap-y-6 lg:grid-cols-3">
+        {front.influence.length > 0 && <InfluenceTable front={front} />}
+        {front.unresolved.length > 0 && <UnresolvedList front={front} />}
+      </div>
     </>
   );
 }
@@ -88,8 +92,8 @@ function residualsOf(front: FrontResult) {
 
 function UnresolvedList({ front }: { front: FrontResult }) {
   return (
-    <section className="mt-7">
-      <h2>Traces that entered no fit</h2>
+    <section className="lg:col-span-2">
+      <h2 className="text-[1rem]">Traces that entered no fit</h2>
       <ul className="mt-1 columns-1 gap-8 text-muted sm:columns-2">
         {front.unresolved.map((trace) => (
           <li key={trace.label} className="break-inside-avoid">

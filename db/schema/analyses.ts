@@ -26,7 +26,7 @@ export interface AnalysisParameters {
     throughOrigin: boolean;
     powerLawIn: "log-time" | "time";
     /** Weights of the fits: each point's own error, or the joint covariance of all crossing times (generalised least squares). */
-    covariance: "diagonal";
+    covariance: "diagonal" | "bootstrap";
   };
 }
 

@@ -27,7 +27,7 @@ const Front = z
     absolute: z.boolean().default(DEFAULT_FRONT_RULE.absolute),
     throughOrigin: z.boolean().default(false),
     powerLawIn: z.enum(["log-time", "time"]).default("log-time"),
-    covariance: z.literal("diagonal").default("diagonal"),
+    covariance: z.enum(["diagonal", "bootstrap"]).default("diagonal"),
   })
   .refine((front) => front.rule === "noise-multiple" || front.level < 1, { path: ["level"], message: "must be below 1 for this rule" });
 

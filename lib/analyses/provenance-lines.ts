@@ -15,7 +15,7 @@ export function provenanceLines({ analysis, runTitle, createdByName }: AnalysisR
     `estimator: ${parameters.estimator}; readout correction: ${parameters.readoutCorrection ? "yes" : "no"}`,
     `bootstrap: ${bootstrap.replicates} replicates, seed ${bootstrap.seed}, 95 % ${bootstrap.interval} intervals${bootstrap.blockLength > 1 ? `, blocks of ${bootstrap.blockLength} consecutive shots` : ""}`,
     `traces: ${traces.kind === "reference" ? `reference site ${traces.site}` : `by distance${traces.bulk ? ` within sites ${traces.bulk.join(" ")}` : ""}`}`,
-    `front: ${front.rule} level ${front.level}, method ${front.method}, hold ${front.hold}, min signal ${front.minSignal}, ${front.absolute ? "absolute" : "oriented"} signal${front.throughOrigin ? ", line through the origin" : ""}, power law fitted in ${front.powerLawIn === "time" ? "time" : "log time"}`,
+    `front: ${front.rule} level ${front.level}, method ${front.method}, hold ${front.hold}, min signal ${front.minSignal}, ${front.absolute ? "absolute" : "oriented"} signal${front.throughOrigin ? ", line through the origin" : ""}, power law fitted in ${front.powerLawIn === "time" ? "time" : "log time"}${front.covariance === "bootstrap" ? ", joint covariance of the crossing times" : ""}`,
   ];
 }
 

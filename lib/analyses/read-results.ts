@@ -168,9 +168,13 @@ async function readTraceMarks(row: AnalysisRow, name: string, pairsOfTrace: numb
   return pairsOfTrace.map((pairs) => row.timesUs.map((_, k) => pairs.some((pair) => marks[k * width + pair] === 1)));
 }
 
-export function readFront(row: AnalysisRow): Promise<FrontResult> {
-  return readJson<FrontResult>(database(), row.analysis.id, "front");
+/** Returns the front; one stored before influence was kept has none. */
+export async function readFront(row: AnalysisRow): Promise<FrontResult> {
+  const stored = await readJson<Omit<FrontResult, NewInFront> & Partial<Pick<FrontResult, NewInFront>>>(database(), row.analysis.id, "front");
+  return { influence: [], failedFitShare: null, ...stored };
 }
+
+type NewInFront = "influence" | "failedFitShare";
 
 function marksInRows(marks: Uint8Array, first: number, count: number, width: number): boolean[][] {
   return Array.from({ length: count }, (_, row) => Array.from(marks.subarray((first + row) * width, (first + row + 1) * width), Boolean));

@@ -115,7 +115,7 @@ function timeMessage({ analysis, version }: Inputs, plan: TracePlan, reading: Re
 }
 
 function runFront(traces: TraceSet, { front }: AnalysisParameters, { pool, signal }: JobContext): Promise<FrontAnswer> {
-  const { throughOrigin, powerLawIn, ...rule } = front;
-  const message: FrontMessage = { traces, rule, options: { throughOrigin, powerLawIn } };
+  const { throughOrigin, powerLawIn, covariance, ...rule } = front;
+  const message: FrontMessage = { traces, rule, options: { throughOrigin, powerLawIn, covariance } };
   return pool.run(message, { name: "frontInThread", signal }) as Promise<FrontAnswer>;
 }

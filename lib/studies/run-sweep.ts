@@ -33,7 +33,7 @@ export async function runSweep(inputs: StudyInputs, context: JobContext): Promis
   if (isProblem(distancePlan)) return distancePlan;
   const calibration = await loadCalibration(context.database, { runId: analysis.runId, version: version.number }, version.sites);
   const readoutErrors = shiftedReadoutErrors(sites, thresholdShifts, calibration);
-  const { throughOrigin, powerLawIn, ...rule } = parameters.front;
+  const { throughOrigin, powerLawIn, covariance, ...rule } = parameters.front;
   const gamma = analysis.summary?.gamma;
   const input: SweepInput = {
     times_us: Float64Array.from(version.timesUs),
@@ -41,7 +41,7 @@ export async function runSweep(inputs: StudyInputs, context: JobContext): Promis
     brightIs: provenance.brightIs,
     estimator: parameters.estimator,
     rule,
-    options: { throughOrigin, powerLawIn },
+    options: { throughOrigin, powerLawIn, covariance },
     traces: traces.kind === "distance" ? { kind: "distance" } : { kind: "reference", site: traces.site },
     readoutCorrected: parameters.readoutCorrection,
     thresholdShifts,

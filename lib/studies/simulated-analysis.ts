@@ -8,7 +8,7 @@ export function simulatedAnalysis({ analysis, version, sites }: StudyInputs, see
   const { parameters, provenance } = analysis;
   const traces = planTraces(parameters.traces, provenance.positions);
   if (isProblem(traces)) return traces;
-  const { throughOrigin, powerLawIn, ...rule } = parameters.front;
+  const { throughOrigin, powerLawIn, covariance, ...rule } = parameters.front;
   return {
     times_us: Float64Array.from(version.timesUs),
     shotsPerTime: Float64Array.from(version.shotsPerTime),
@@ -19,7 +19,7 @@ export function simulatedAnalysis({ analysis, version, sites }: StudyInputs, see
     interval: parameters.bootstrap.interval,
     traces,
     rule,
-    options: { throughOrigin, powerLawIn },
+    options: { throughOrigin, powerLawIn, covariance },
     replicates: parameters.bootstrap.replicates,
     seed,
   };

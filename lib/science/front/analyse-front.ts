@@ -1,8 +1,10 @@
+import { crossingCovariance } from "@/lib/science/front/crossing-covariance";
+import { influenceOf } from "@/lib/science/front/influence";
 import { compareFits } from "@/lib/science/front/comparison";
 import { findCrossing, type TraceCrossing } from "@/lib/science/front/crossing";
 import { createCrossingScratch } from "@/lib/science/front/crossing-kernel";
 import { frontCurve, linearTime_us, powerLawTime_us } from "@/lib/science/front/front-curves";
-import { frontPointsOf, whyNoFit, whyNotFitted } from "@/lib/science/front/front-points";
+import { frontPointsOf, whyNoFit, whyNotFitted, type FrontPoints } from "@/lib/science/front/front-points";
 import type { FrontPoint, FrontResult, NoFit } from "@/lib/science/front/front-result";
 import { DEFAULT_FRONT_FIT_OPTIONS, type FrontFitOptions, type FrontRule } from "@/lib/science/front/front-rule";
 import { frontWarnings } from "@/lib/science/front/front-warnings";
@@ -59,8 +61,7 @@ function frontOf(traces: TraceSet, rule: FrontRule, options: FrontFitOptions, fo
   const { crossings, spreads, reasons, points, tau } = found;
   const count = traces.replicateCount;
   const used = Array.from(reasons.keys()).filter((j) => reasons[j] === null);
-  const fitted = frontPointsOf(used, traces.distances, crossings, spreads);
-  const noFit = whyNoFit(fitted.distance);
+  const { fitted, noFit } = pointsToFit(frontPointsOf(used, traces.distances, crossings, spreads), tau, count, options);
   const linear = noFit === null ? linearFrontOf(fitted, tau, count, options.throughOrigin) : null;
   const attempt = noFit === null ? powerLawFrontOf(fitted, tau, count, options.powerLawIn) : { reason: noFit };
   const powerLaw = "reason" in attempt ? null : attempt;
@@ -79,11 +80,21 @@ function frontOf(traces: TraceSet, rule: FrontRule, options: FrontFitOptions, fo
       const reason = reasons[j];
       return reason === null ? [] : [{ label, distance, status, reason }];
     }),
+    influence: powerLaw === null ? [] : influenceOf(fitted, traces.labels, options, powerLaw.front.gamma),
+    failedFitShare: powerLaw === null || count === 0 ? null : 1 - powerLaw.front.replicatesFitted / count,
     curves: {
       linear: linear === null ? null : frontCurve(fitted, linear, linearTime_us),
       powerLaw: powerLaw === null ? null : frontCurve(fitted, powerLaw, powerLawTime_us),
     },
   };
+}
+
+/** The points with the weights they are asked to have, or why they allow no fit. */
+function pointsToFit(fitted: FrontPoints, tau: Float64Array, count: number, { covariance }: FrontFitOptions): { fitted: FrontPoints; noFit: string | null } {
+  const noFit = whyNoFit(fitted.distance);
+  if (noFit !== null || covariance === "diagonal") return { fitted, noFit };
+  const joint = crossingCovariance(fitted.trace, tau, count);
+  return "reason" in joint ? { fitted, noFit: joint.reason } : { fitted: { ...fitted, covariance: joint }, noFit: null };
 }
 
 function frontPoint(

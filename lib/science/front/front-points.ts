@@ -12,6 +12,8 @@ export interface FrontPoints {
   error_us: Float64Array;
   /** σ'_j = √(σ_j² + median(σ)²): σ_j is itself noisy, and bare weights let a lucky small one decide the fit. */
   softened_us: Float64Array;
+  /** `[point][point]`, µs²: the joint covariance of the crossing times for generalised least squares; null for independent points. */
+  covariance: Float64Array | null;
 }
 
 export const LEAST_POINTS = 3;
@@ -47,7 +49,29 @@ export function frontPointsOf(
     time_us: Float64Array.from(used, (j) => crossings[j].time_us),
     error_us,
     softened_us: used.length > 0 ? softenErrors(error_us) : error_us,
+    covariance: null,
   };
+}
+
+/** Returns some of the points, by their place among the given ones, with the weights they had among all. */
+export function chosenPoints(points: FrontPoints, chosen: readonly number[]): FrontPoints {
+  return {
+    trace: Int32Array.from(chosen, (p) => points.trace[p]),
+    distance: Float64Array.from(chosen, (p) => points.distance[p]),
+    time_us: Float64Array.from(chosen, (p) => points.time_us[p]),
+    error_us: Float64Array.from(chosen, (p) => points.error_us[p]),
+    softened_us: Float64Array.from(chosen, (p) => points.softened_us[p]),
+    covariance: points.covariance && submatrix(points.covariance, points.trace.length, chosen),
+  };
+}
+
+/** Returns rows and columns `chosen` of a square matrix. */
+export function submatrix(matrix: Float64Array, size: number, chosen: ArrayLike<number>): Float64Array {
+  const part = new Float64Array(chosen.length * chosen.length);
+  for (let row = 0; row < chosen.length; row++) {
+    for (let column = 0; column < chosen.length; column++) part[row * chosen.length + column] = matrix[chosen[row] * size + chosen[column]];
+  }
+  return part;
 }
 
 /** Returns why these distances allow no fit of two parameters, or null. */

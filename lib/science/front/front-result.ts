@@ -33,7 +33,7 @@ export interface FrontPoint {
   warnings: CrossingWarning[];
 }
 
-/** How well a model fits. χ² is Σ((τ − model)/σ)² with the plain errors for both models, so that they compare. */
+/** How well a model fits. χ² is Σ((τ − model)/σ)² with the plain errors, or rᵀ S⁻¹ r with the joint covariance, for both models. */
 export interface FitQuality {
   chi2: number;
   dof: number;
@@ -73,6 +73,17 @@ export interface FrontComparison {
 }
 
 export type Verdict = "faster than linear" | "slower than linear" | "not distinguishable from linear" | "no fit";
+
+/** What the fits would be without one point. */
+export interface PointInfluence {
+  label: string;
+  distance: number;
+  gamma: number | null;
+  beta: number | null;
+  v_sites_per_ms: number | null;
+  /** How far γ moves without the point, in units of its bootstrap error. */
+  gammaShiftInErrors: number | null;
+}
 
 export interface FrontVelocity {
   /** 1/slope of the straight line, everywhere the same; null without that fit. */
@@ -117,6 +128,10 @@ export interface FrontResult {
   warnings: string[];
   /** The traces that entered no fit, and why. */
   unresolved: { label: string; distance: number; status: CrossingStatus; reason: string }[];
+  /** Leaving out each fitted point in turn; empty where too few would be left. */
+  influence: PointInfluence[];
+  /** Share of the replicates whose points allow no power law; null without replicates or fit. */
+  failedFitShare: number | null;
   curves: { linear: FrontCurve | null; powerLaw: FrontCurve | null };
 }
 

@@ -39,6 +39,8 @@ export interface FrontFitOptions {
   throughOrigin: boolean;
   /** Least squares of the power law in ln τ (`log-time`), or in τ itself (`time`). */
   powerLawIn: "log-time" | "time";
+  /** Weights of the fits: each point's own error, or the joint bootstrap covariance of all crossing times (generalised least squares). */
+  covariance: "diagonal" | "bootstrap";
 }
 
-export const DEFAULT_FRONT_FIT_OPTIONS: Readonly<FrontFitOptions> = { throughOrigin: false, powerLawIn: "log-time" };
+export const DEFAULT_FRONT_FIT_OPTIONS: Readonly<FrontFitOptions> = { throughOrigin: false, powerLawIn: "log-time", covariance: "diagonal" };

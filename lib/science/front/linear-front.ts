@@ -1,7 +1,7 @@
+import { linearFitter } from "@/lib/science/front/front-fitters";
 import { fitQuality } from "@/lib/science/front/fit-quality";
 import type { FrontPoints } from "@/lib/science/front/front-points";
 import type { LinearFront, Parameter } from "@/lib/science/front/front-result";
-import { fitLinearFront } from "@/lib/science/front/linear-fit";
 import { parameterOf, reciprocalOf } from "@/lib/science/front/parameter";
 import { fitReplicates, type ReplicateFits } from "@/lib/science/front/replicate-fits";
 import { summariseReplicates } from "@/lib/science/front/replicate-summary";
@@ -23,10 +23,9 @@ export function linearFrontOf(
   replicateCount: number,
   throughOrigin: boolean,
 ): LinearFrontFitted {
-  const fit = fitLinearFront(points.distance, points.time_us, points.softened_us, throughOrigin);
-  const replicates = fitReplicates(points, tau, replicateCount, -Infinity, (distance, time_us, softened_us) =>
-    fitLinearFront(distance, time_us, softened_us, throughOrigin),
-  );
+  const fitter = linearFitter(points, throughOrigin);
+  const fit = fitter(points.distance, points.time_us, points.softened_us, Int32Array.from(points.trace.keys()));
+  const replicates = fitReplicates(points, tau, replicateCount, -Infinity, fitter);
   const model_us = points.distance.map((d) => fit.offset + fit.slope * d);
   const quality = fitQuality(points, model_us, throughOrigin ? 1 : 2, replicates.fitted);
   const fixedOffset: Parameter = { value: 0, error: null, low: null, high: null, fitError: null };

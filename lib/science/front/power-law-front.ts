@@ -2,8 +2,8 @@ import { fitQuality } from "@/lib/science/front/fit-quality";
 import type { FrontPoints } from "@/lib/science/front/front-points";
 import type { NoFit, PowerLawFront, ReciprocalParameter } from "@/lib/science/front/front-result";
 import { finiteOrNull, parameterOf, reciprocalOf } from "@/lib/science/front/parameter";
-import { amplitudeErrorOf, amplitudeOf, fitPowerLaw, type PowerLawFit } from "@/lib/science/front/power-law-fit";
-import { fitPowerLawInTime } from "@/lib/science/front/power-law-in-time-fit";
+import { powerLawFitter } from "@/lib/science/front/front-fitters";
+import { amplitudeErrorOf, amplitudeOf, type PowerLawFit } from "@/lib/science/front/power-law-fit";
 import { fitReplicates, type ReplicateFits } from "@/lib/science/front/replicate-fits";
 import { summariseReplicates, type ReplicateSummary } from "@/lib/science/front/replicate-summary";
 
@@ -22,8 +22,8 @@ export function powerLawFrontOf(
   replicateCount: number,
   fittedIn: "log-time" | "time",
 ): PowerLawFrontFitted | NoFit {
-  const fitter = fittedIn === "time" ? fitPowerLawInTime : fitPowerLaw;
-  const fit = fitter(points.distance, points.time_us, points.softened_us);
+  const fitter = powerLawFitter(points, fittedIn);
+  const fit = fitter(points.distance, points.time_us, points.softened_us, Int32Array.from(points.trace.keys()));
   if (Number.isNaN(fit.slope)) return { reason: "The power law's least squares in τ did not converge." };
   // A replicate that is at the level at t = 0 has no logarithm, and leaves the point out like a missing crossing.
   const replicates = fitReplicates(points, tau, replicateCount, 0, fitter);

@@ -21,23 +21,28 @@ interface NormalEquations {
   misfit: number;
 }
 
+/** Turns values of the points into ones with independent errors of 1. */
+export type Whitening = (values: Float64Array) => Float64Array;
+
 /**
- * Returns the power law by least squares in τ itself, τ = (d/a)^γ with weights 1/σ'², all arrays `[point]`, times in
- * µs: Levenberg–Marquardt (Marquardt 1963) in (−γ ln a, γ), started from the fit in ln τ. NaN unless converged.
+ * Returns the power law by least squares in τ itself, τ = (d/a)^γ with weights 1/σ'², or with the joint covariance that `whitening` undoes,
+ * all arrays `[point]`, times in µs: Levenberg–Marquardt (Marquardt 1963) in (−γ ln a, γ), started from the fit in ln τ. NaN unless
+ * converged.
  */
 export function fitPowerLawInTime(
   distance: Float64Array,
   time_us: Float64Array,
   softened_us: Float64Array,
+  whitening: Whitening = (values) => values.map((value, p) => value / softened_us[p]),
 ): PowerLawInTimeFit {
   const start = fitPowerLaw(distance, time_us, softened_us);
   const lnDistance = distance.map(Math.log);
   let { offset, slope } = start;
-  let at = normalEquations(lnDistance, time_us, softened_us, offset, slope);
+  let at = normalEquations(lnDistance, time_us, whitening, offset, slope);
   let damping = 1e-3;
   for (let iterations = 1; iterations <= MOST_ITERATIONS && damping < HARDEST_DAMPING; iterations++) {
     const step = dampedStep(at, damping);
-    const next = normalEquations(lnDistance, time_us, softened_us, offset + step.offset, slope + step.slope);
+    const next = normalEquations(lnDistance, time_us, whitening, offset + step.offset, slope + step.slope);
     const small =
       Math.abs(step.offset) <= STEP_TOLERANCE * (1 + Math.abs(offset)) && Math.abs(step.slope) <= STEP_TOLERANCE;
     if (next.misfit <= at.misfit) {
@@ -57,22 +62,22 @@ export function fitPowerLawInTime(
 function normalEquations(
   lnDistance: Float64Array,
   time_us: Float64Array,
-  softened_us: Float64Array,
+  whitening: Whitening,
   offset: number,
   slope: number,
 ): NormalEquations {
+  const model = lnDistance.map((lnD) => Math.exp(offset + slope * lnD));
+  const perOffset = whitening(model);
+  const perSlope = whitening(model.map((time, j) => time * lnDistance[j]));
+  const residual = whitening(model.map((time, j) => time_us[j] - time));
   const sums = { oo: 0, os: 0, ss: 0, go: 0, gs: 0, misfit: 0 };
   for (let j = 0; j < time_us.length; j++) {
-    const weight = 1 / (softened_us[j] * softened_us[j]);
-    const model = Math.exp(offset + slope * lnDistance[j]);
-    const residual = time_us[j] - model;
-    const perSlope = model * lnDistance[j];
-    sums.oo += weight * model * model;
-    sums.os += weight * model * perSlope;
-    sums.ss += weight * perSlope * perSlope;
-    sums.go += weight * model * residual;
-    sums.gs += weight * perSlope * residual;
-    sums.misfit += weight * residual * residual;
+    sums.oo += perOffset[j] * perOffset[j];
+    sums.os += perOffset[j] * perSlope[j];
+    sums.ss += perSlope[j] * perSlope[j];
+    sums.go += perOffset[j] * residual[j];
+    sums.gs += perSlope[j] * residual[j];
+    sums.misfit += residual[j] * residual[j];
   }
   return sums;
 }

@@ -1,5 +1,5 @@
 import type { FrontPoints } from "@/lib/science/front/front-points";
-import { LEAST_POINTS, whyNoFit } from "@/lib/science/front/front-points";
+import { chosenPoints, LEAST_POINTS, whyNoFit } from "@/lib/science/front/front-points";
 import type { Parameter } from "@/lib/science/front/front-result";
 import { powerLawFrontOf } from "@/lib/science/front/power-law-front";
 import type { TraceSet } from "@/lib/science/front/trace-set";
@@ -62,14 +62,4 @@ export function windowEvidence(
   const canFit = chosen.length >= LEAST_POINTS && chosen.length < points && whyNoFit(inner.distance) === null;
   const fit = canFit ? powerLawFrontOf(inner, tau, replicateCount, fittedIn) : null;
   return { points, inside: chosen.length, gammaInside: fit === null || "reason" in fit ? null : fit.front.gamma };
-}
-
-function chosenPoints(fitted: FrontPoints, chosen: readonly number[]): FrontPoints {
-  return {
-    trace: Int32Array.from(chosen, (p) => fitted.trace[p]),
-    distance: Float64Array.from(chosen, (p) => fitted.distance[p]),
-    time_us: Float64Array.from(chosen, (p) => fitted.time_us[p]),
-    error_us: Float64Array.from(chosen, (p) => fitted.error_us[p]),
-    softened_us: Float64Array.from(chosen, (p) => fitted.softened_us[p]),
-  };
 }

@@ -6,7 +6,7 @@ import type { TraceSet } from "@/lib/science/front/trace-set";
 import { expectedRun, traceSetOf, traceSetOfRun } from "./run-fixtures";
 import { measureCone, type Cone } from "./simulated-cone";
 
-const LOG_TIME = { throughOrigin: false, powerLawIn: "log-time" } as const;
+const LOG_TIME = { throughOrigin: false, powerLawIn: "log-time", covariance: "diagonal" } as const;
 
 const straightCone: Cone = {
   distances: [1, 2, 3, 4, 5, 6, 7, 8, 9, 10],
@@ -166,7 +166,7 @@ describe("fit options", () => {
 
   test("the power law in τ itself is another fit, within its error of that in ln τ, and converges in every replicate", () => {
     const inTime = bothFits(
-      analyseFront(traces, DEFAULT_FRONT_RULE, { throughOrigin: false, powerLawIn: "time" }).front,
+      analyseFront(traces, DEFAULT_FRONT_RULE, { ...LOG_TIME, powerLawIn: "time" }).front,
     ).powerLaw;
     const inLogTime = bothFits(analyseFront(traces, DEFAULT_FRONT_RULE, LOG_TIME).front).powerLaw;
     expect(inTime.fittedIn).toBe("time");

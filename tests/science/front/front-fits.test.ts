@@ -17,6 +17,7 @@ function pointsOfRun({ deterministic, statistical }: ExpectedRun): FrontPoints {
     time_us: Float64Array.from(used, (j) => crossing_us[j] ?? NaN),
     error_us,
     softened_us: softenErrors(error_us),
+    covariance: null,
   };
 }
 

@@ -3,7 +3,7 @@ import { describe, expect, test } from "vitest";
 import { crossingsOf } from "@/lib/science/front/analyse-front";
 import { softenErrors } from "@/lib/science/front/front-points";
 import { DEFAULT_FRONT_RULE, type FrontRule } from "@/lib/science/front/front-rule";
-import { fitLinearFront } from "@/lib/science/front/linear-fit";
+import { linearFitter } from "@/lib/science/front/front-fitters";
 import { replicateCrossings, spreadOfCrossings } from "@/lib/science/front/replicate-crossings";
 import { fitReplicates, type FrontFitter } from "@/lib/science/front/replicate-fits";
 import { traceSetOf } from "./run-fixtures";
@@ -82,9 +82,9 @@ describe("fits in replicates", () => {
     time_us: Float64Array.of(1, 2, 3, 4),
     error_us,
     softened_us: softenErrors(error_us),
+    covariance: null,
   };
-  const straight: FrontFitter = (distance, time_us, softened_us) =>
-    fitLinearFront(distance, time_us, softened_us, false);
+  const straight: FrontFitter = linearFitter(points, false);
 
   test("leave a missing crossing out of that replicate's fit only, with the errors of the full data", () => {
     fc.assert(
@@ -114,6 +114,7 @@ describe("fits in replicates", () => {
               pick((p) => points.distance[p]),
               pick((p) => times[points.trace[p]]),
               pick((p) => points.softened_us[p]),
+              Int32Array.from(present),
             );
             expect([fits.offset[b], fits.slope[b]]).toEqual([alone.offset, alone.slope]);
           });
