@@ -1,6 +1,7 @@
 /**
  * `npm run bench`: the main job on a surrogate run, ours with one and two threads against the NumPy baseline, turn by
- * turn on the same cores; medians. Options: --sites 16 --times 40 --shots 4000 --rounds 3; --kernels measures our own steps instead.
+ * turn on the same cores; medians. Options: --sites 16 --times 40 --shots 4000 --rounds 3; --kernels measures our own steps instead,
+ * --studies the simulated runs of null front and self-test.
  */
 import { spawnSync } from "node:child_process";
 import { existsSync, mkdirSync } from "node:fs";
@@ -18,6 +19,7 @@ const { values: options } = parseArgs({
     shots: { type: "string", default: "4000" },
     rounds: { type: "string", default: "3" },
     kernels: { type: "boolean", default: false },
+    studies: { type: "boolean", default: false },
     python: { type: "string", default: existsSync("/usr/bin/python3") ? "/usr/bin/python3" : "python3" },
   },
 });
@@ -37,6 +39,7 @@ await build({
     "analyse-run": `${root}scripts/bench/analyse-run.ts`,
     "time-thread": `${root}scripts/bench/time-thread.ts`,
     "time-kernels": `${root}scripts/bench/time-kernels.ts`,
+    "time-studies": `${root}scripts/bench/time-studies.ts`,
   },
   outdir: folder,
   outExtension: { ".js": ".mjs" },
@@ -47,6 +50,10 @@ await build({
   alias: { "@": root.replace(/\/$/, "") },
   logLevel: "error",
 });
+if (options.studies) {
+  console.log(run(process.execPath, [`${folder}/time-studies.mjs`, options.sites, options.times, options.shots, options.rounds]).trimEnd());
+  process.exit(0);
+}
 const file = `${folder}/run-${options.sites}-${options.times}-${options.shots}.npz`;
 if (!existsSync(file)) run(options.python, [baseline, "--make", options.sites, options.times, options.shots, file]);
 
