@@ -79,7 +79,7 @@ describe("the ideal bootstrap of the law school data, over all its resamples", (
   const acceleration = jackknifeAcceleration(leaveOneOut());
   beforeAll(() => {
     ideal = enumerate(estimate);
-  }, 60_000);
+  }, 120_000);
 
   it("counts 77 558 760 resamples with the published mean, error and z₀", () => {
     expect(ideal.resamples).toBe(77_558_760);

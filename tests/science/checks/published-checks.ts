@@ -27,6 +27,7 @@ export interface PublishedChecks {
   };
   lawSchool: Record<"biasCorrected90" | "biasCorrected95" | "basic90" | "basic95", [number, number]> & { jackknifeError: number };
   danWood: { power: { aicc: number; bic: number }; line: Line; originLine: { slope: number; aicc: number } };
+  exactFronts: { alpha: number | null; crossings: number[]; gamma: number }[];
   besselCrossings: number[];
   besselFits: { from: number; to: number; freeVelocity: number; originVelocity: number; gamma: number }[];
 }
