@@ -4,6 +4,14 @@ import { groups } from "./groups";
 import { runs } from "./runs";
 import { users } from "./users";
 
+/** What richer models fit besides: chances to leak per count of signal, variance beyond Poisson in units of mean². */
+interface CountModelExtras {
+  leakDark?: number;
+  leakBright?: number;
+  darkExcess?: number;
+  brightExcess?: number;
+}
+
 /** One site of a saved detection; null where the method cannot tell. */
 export interface DetectionSite {
   site: number;
@@ -16,7 +24,7 @@ export interface DetectionSite {
   /** What the ε's rest on, for their own uncertainty: Beta(x + ½, K − x + ½) per rate. */
   evidence: { dark: { errors: number; shots: number }; bright: { errors: number; shots: number } } | null;
   /** Fitted components with the standard errors of their rates, when a mixture was fitted; detections from before they were kept have none. */
-  mixture: { dark: number; bright: number; brightWeight: number; darkError?: number; brightError?: number } | null;
+  mixture: { dark: number; bright: number; brightWeight: number; darkError?: number; brightError?: number } & CountModelExtras | null;
   warnings: { code: string; message: string }[];
 }
 

@@ -2,14 +2,14 @@ import "server-only";
 import { and, eq, max } from "drizzle-orm";
 import { database } from "@/db/connection";
 import { newId } from "@/db/new-id";
-import { detections, type DetectionSite } from "@/db/schema/detections";
+import { detections } from "@/db/schema/detections";
 import { runs } from "@/db/schema/runs";
 import { inTransaction } from "@/db/transaction";
 import { refusal, type Actor } from "@/lib/accounts/policy";
 import { invalidAt, isProblem, problem, type Problem } from "@/lib/problem";
 import { findCurrentVersion, findRunInGroup, type RunVersionRow } from "@/lib/runs/find-run";
 import { loadCalibration, loadHistograms } from "@/lib/runs/load-counts";
-import { detect } from "@/lib/science/detection/detect";
+import { detect, type Detected } from "@/lib/science/detection/detect";
 import type { CreateDetectionInput } from "./detection-schemas";
 import { showDetection, type ShownDetection } from "./show-detection";
 
@@ -21,8 +21,8 @@ export async function createDetection(actor: Actor, runId: string, input: Create
   if (isProblem(run)) return run;
   const version = await findCurrentVersion(database(), run);
   if (!version) return problem("conflict", "The run has no shots yet; send an archive and wait until it is read.");
-  const sites = await detectSites(version, input);
-  if (isProblem(sites)) return sites;
+  const detected = await detectSites(version, input);
+  if (isProblem(detected)) return detected;
   return inTransaction(database(), async (transaction) => {
     // The run's row is the lock under which numbers are given.
     const [locked] = await transaction.select({ id: runs.id }).from(runs).where(and(eq(runs.id, runId), eq(runs.groupId, actor.groupId))).for("update");
@@ -36,8 +36,8 @@ export async function createDetection(actor: Actor, runId: string, input: Create
       number: (last ?? 0) + 1,
       method: input.method,
       label: input.label || null,
-      sites,
-      model: null,
+      sites: detected.sites,
+      model: detected.model,
       createdBy: actor.userId,
       createdAt: new Date(),
     };
@@ -46,16 +46,18 @@ export async function createDetection(actor: Actor, runId: string, input: Create
   });
 }
 
-async function detectSites(version: RunVersionRow, input: CreateDetectionInput): Promise<DetectionSite[] | Problem> {
+async function detectSites(version: RunVersionRow, input: CreateDetectionInput): Promise<Detected | Problem> {
   const key = { runId: version.runId, version: version.number };
   const [histograms, calibration] = await Promise.all([loadHistograms(database(), key, "shots"), loadCalibration(database(), key, version.sites)]);
   const detected = detect({
     method: input.method,
+    model: input.model,
+    thresholdScope: input.thresholdScope,
     thresholds: input.thresholds ?? (input.threshold === undefined ? null : [input.threshold]),
     histograms,
     countKind: version.countType === "uint16" ? "whole" : "fractional",
     calibration,
   });
   if (detected.kind === "refused") return invalidAt(detected.where, detected.message);
-  return detected.sites;
+  return detected;
 }

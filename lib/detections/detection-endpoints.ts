@@ -7,6 +7,8 @@ import { CreateDetectionInput } from "./detection-schemas";
 const Rates = z.array(z.number().nullable());
 const Intervals = z.array(z.tuple([z.number(), z.number()]).nullable());
 
+const Extras = { leakDark: z.number().optional(), leakBright: z.number().optional(), darkExcess: z.number().optional(), brightExcess: z.number().optional() };
+
 export const DetectionAnswer = z.object({
   id: z.string(),
   runId: z.string(),
@@ -21,7 +23,8 @@ export const DetectionAnswer = z.object({
   falseBrightInterval: Intervals,
   falseDarkInterval: Intervals,
   fidelity: Rates,
-  mixture: z.array(z.object({ dark: z.number(), bright: z.number(), brightWeight: z.number(), darkError: z.number().optional(), brightError: z.number().optional() }).nullable()),
+  mixture: z.array(z.object({ dark: z.number(), bright: z.number(), brightWeight: z.number(), darkError: z.number().optional(), brightError: z.number().optional(), ...Extras }).nullable()),
+  model: z.object({ name: z.string(), chosen: z.enum(["bic", "by-hand"]), bic: z.array(z.object({ name: z.string(), value: z.number() })), reason: z.string() }).nullable(),
   warnings: z.array(z.array(z.object({ code: z.string(), message: z.string() }))),
   createdBy: z.string(),
   createdAt: z.iso.datetime(),

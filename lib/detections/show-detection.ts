@@ -20,6 +20,7 @@ export function showDetection(row: DetectionRow, createdBy: string, currentVersi
     falseDarkInterval: row.sites.map(({ falseDarkInterval }) => falseDarkInterval),
     fidelity: row.sites.map(({ fidelity }) => fidelity),
     mixture: row.sites.map(({ mixture }) => mixture),
+    model: row.model,
     warnings: row.sites.map(({ warnings }) => warnings),
     createdBy,
     createdAt: row.createdAt.toISOString(),

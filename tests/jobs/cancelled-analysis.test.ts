@@ -22,7 +22,7 @@ describe("an analysis that is cancelled while it runs", () => {
   it("ends cancelled within two seconds, stores nothing, and the worker takes the next", async () => {
     const { runId, jobId } = await runWithArchive(world.actor, "shots.npz", fixture("runs/straight-front-24/shots.npz"));
     await untilJob(world.actor, jobId);
-    const detection = must(await createDetection(world.actor, runId, { method: "fixed", threshold: 4.5 }));
+    const detection = must(await createDetection(world.actor, runId, { method: "fixed", model: "auto", thresholdScope: "site", threshold: 4.5 }));
     const analyse = async (replicates: number) => must(await createAnalysis(world.actor, runId, CreateAnalysisInput.parse({ detectionId: detection.id, bootstrap: { replicates } })));
     const long = await analyse(20_000);
     await untilJob(world.actor, long.job.id, ({ state, progress }) => state === "running" && progress > 0.05);

@@ -18,7 +18,7 @@ beforeAll(async () => {
   const made = await runWithArchive(world.actor, "shots.npz", fixture(`runs/${ARCHIVE}`));
   runId = made.runId;
   expect((await untilJob(world.actor, made.jobId)).state).toBe("done");
-  detectionId = must(await createDetection(world.actor, runId, { method: "fixed", threshold: 4.5 })).id;
+  detectionId = must(await createDetection(world.actor, runId, { method: "fixed", model: "auto", thresholdScope: "site", threshold: 4.5 })).id;
   await killed(worker);
 });
 afterAll(() => world.end());

@@ -25,7 +25,7 @@ describe("a run that is removed in the middle of its analysis", () => {
   it("leaves nothing behind, and the worker goes on with the next job", async () => {
     const removed = await runWithArchive(world.actor, "shots.npz", ARCHIVE);
     await untilJob(world.actor, removed.jobId);
-    const detection = must(await createDetection(world.actor, removed.runId, { method: "fixed", threshold: 4.5 }));
+    const detection = must(await createDetection(world.actor, removed.runId, { method: "fixed", model: "auto", thresholdScope: "site", threshold: 4.5 }));
     const started = must(await createAnalysis(world.actor, removed.runId, CreateAnalysisInput.parse({ detectionId: detection.id, bootstrap: { replicates: 15_000 } })));
     await untilJob(world.actor, started.job.id, ({ state, progress }) => state === "running" && progress > 0.1);
     expect(await deleteRun(world.actor, removed.runId)).toBeNull();

@@ -79,7 +79,7 @@ const SEED = 1;
 export function analyseDemo(run: DemoCounts, corrected: boolean): AnalysedDemo {
   const detected = detect({
     method: run.calibration === null ? "mixture" : "calibration",
-    thresholds: null,
+    model: "auto", thresholdScope: "site", thresholds: null,
     histograms: countHistograms(run.counts, run.sites),
     countKind: "whole",
     calibration: run.calibration,

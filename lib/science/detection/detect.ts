@@ -6,8 +6,10 @@ import {
   type DetectionWarningCode,
 } from "@/lib/science/detection/detection-warnings";
 import { largestBin, type SiteHistogram } from "@/lib/science/detection/histogram";
-import { mixtureErrorRates } from "@/lib/science/detection/mixture-error-rates";
-import { fitPoissonMixture, type TwoComponents } from "@/lib/science/detection/poisson-mixture";
+import { chooseCountModel, type ChosenModel, type ModelChoice } from "@/lib/science/detection/choose-count-model";
+import type { CountModelName } from "@/lib/science/detection/count-model";
+import type { FittedModel } from "@/lib/science/detection/fitted-model";
+import { fitPoissonMixture } from "@/lib/science/detection/poisson-mixture";
 import {
   fitWarnings,
   isUsable,
@@ -15,9 +17,10 @@ import {
   readingWarnings,
   type SiteFit,
 } from "@/lib/science/detection/site-warnings";
-import { advisePoissonThreshold } from "@/lib/science/detection/threshold";
 import type { Interval } from "@/lib/science/stats/intervals";
 import { median } from "@/lib/science/stats/quantiles";
+
+const MOST_CANDIDATES = 2048;
 
 /** One site of a detection; null where the method cannot tell. */
 export interface DetectedSite {
@@ -36,7 +39,7 @@ export interface DetectedSite {
   evidence: CalibratedRates["evidence"] | null;
   ratesFrom: "calibration" | "mixture" | null;
   /** The fitted components, when a mixture was fitted and has two. */
-  mixture: { dark: number; bright: number; brightWeight: number; darkError: number; brightError: number } | null;
+  mixture: FittedModel["components"] | null;
   warnings: DetectionWarning[];
 }
 
@@ -44,6 +47,8 @@ export interface Detected {
   kind: "detected";
   /** `[site]` */
   sites: DetectedSite[];
+  /** The model behind a mixture, and why it was taken; null without one. */
+  model: ChosenModel | null;
 }
 
 /**
@@ -56,12 +61,17 @@ export function detect(input: DetectionInput): Detected | DetectionRefusal {
   const refusal = refusalOf(input);
   if (refusal !== null) return refusal;
   const source = rateSource(input);
-  const fits = input.histograms.map((histogram) =>
-    source === "mixture" ? fitPoissonMixture(histogram.frequencies) : null,
-  );
+  const choice = source === "mixture" ? fitSites(input) : null;
+  const fits = choice?.fits ?? input.histograms.map(() => null);
   const thresholds = chooseThresholds(input, fits);
-  const sites = input.histograms.map((_, site) => detectSite(input, site, thresholds[site], fits[site]));
-  return { kind: "detected", sites };
+  const name = choice?.model.name ?? null;
+  const sites = input.histograms.map((_, site) => detectSite(input, site, thresholds[site], fits[site], name));
+  return { kind: "detected", sites, model: choice?.model ?? null };
+}
+
+function fitSites({ histograms, model }: DetectionInput): ModelChoice {
+  const frequencies = histograms.map((histogram) => histogram.frequencies);
+  return chooseCountModel(frequencies, frequencies.map(fitPoissonMixture), model);
 }
 
 function rateSource({ method, calibration, countKind }: DetectionInput): "calibration" | "mixture" | null {
@@ -80,14 +90,31 @@ function chooseThresholds(input: DetectionInput, fits: SiteFit[]): ChosenThresho
   if (thresholds !== null) {
     return histograms.map((_, site) => ownThreshold(thresholds.length === 1 ? thresholds[0] : thresholds[site]));
   }
-  if (method === "calibration" && isFull(calibration)) {
-    return histograms.map((_, site) => ownThreshold(adviseCalibrationThreshold(calibration, site)));
-  }
-  const advised = fits.map((fit) => (isUsable(fit) ? advisePoissonThreshold(fit.dark, fit.bright) : null));
+  const advised =
+    method === "calibration" && isFull(calibration)
+      ? histograms.map((_, site) => adviseCalibrationThreshold(calibration, site))
+      : fits.map((fit) => (isUsable(fit) ? fit.advised : null));
   const own = advised.filter((threshold) => threshold !== null);
+  if (input.thresholdScope === "common" && own.length > 0) {
+    const threshold = commonThreshold(input, fits, own);
+    return histograms.map(() => ownThreshold(threshold));
+  }
   return advised.map((threshold, site) =>
     threshold === null ? standIn(own, histograms[site]) : ownThreshold(threshold),
   );
+}
+
+/** Of the thresholds that any site would take, and the half-integers between, the one with the least mean error; of equals the lowest. */
+function commonThreshold(input: DetectionInput, fits: SiteFit[], advised: number[]): number {
+  const [least, most] = [Math.min(...advised), Math.max(...advised)];
+  const between = Array.from({ length: Math.min(MOST_CANDIDATES, Math.ceil(most - least)) }, (_, n) => Math.floor(least) + 0.5 + n);
+  const candidates = [...new Set([...advised, ...between])].filter((threshold) => threshold >= least && threshold <= most).sort((a, b) => a - b);
+  const meanError = (threshold: number) => fits.reduce((sum, fit, site) => {
+    const rates = ratesOf(input, site, threshold, fit);
+    return rates === null ? sum : sum + rates.falseBright + rates.falseDark;
+  }, 0);
+  const errors = candidates.map(meanError);
+  return candidates[errors.indexOf(Math.min(...errors))];
 }
 
 function ownThreshold(threshold: number): ChosenThreshold {
@@ -102,14 +129,14 @@ function standIn(lenders: number[], histogram: SiteHistogram): ChosenThreshold {
   return { threshold: Math.floor(median(lenders)) + 0.5, standIn: "threshold-borrowed" };
 }
 
-function detectSite(input: DetectionInput, site: number, chosen: ChosenThreshold, fit: SiteFit): DetectedSite {
+function detectSite(input: DetectionInput, site: number, chosen: ChosenThreshold, fit: SiteFit, model: CountModelName | null): DetectedSite {
   const { threshold } = chosen;
   const source = rateSource(input);
   const rates = ratesOf(input, site, threshold, fit);
   const codes: DetectionWarningCode[] = [
     ...fitWarnings(fit),
     ...(chosen.standIn === null ? [] : [chosen.standIn]),
-    ...rateWarnings(rates, source),
+    ...rateWarnings(rates, source, model),
     ...readingWarnings(input.histograms[site], threshold, input.countKind === "whole" ? 0 : 1),
   ];
   return {
@@ -122,18 +149,14 @@ function detectSite(input: DetectionInput, site: number, chosen: ChosenThreshold
     fidelity: rates === null ? null : 1 - (rates.falseBright + rates.falseDark) / 2,
     evidence: rates?.evidence ?? null,
     ratesFrom: rates === null ? null : source,
-    mixture: fit?.kind === "two-components" ? componentsOf(fit) : null,
+    mixture: fit?.kind === "two-components" ? fit.components : null,
     warnings: codes.map(detectionWarning),
   };
-}
-
-function componentsOf({ dark, bright, brightWeight, darkError, brightError }: TwoComponents): DetectedSite["mixture"] {
-  return { dark, bright, brightWeight, darkError, brightError };
 }
 
 function ratesOf(input: DetectionInput, site: number, threshold: number, fit: SiteFit): CalibratedRates | null {
   if (rateSource(input) === "calibration" && isFull(input.calibration)) {
     return calibrateSite(input.calibration, site, threshold);
   }
-  return isUsable(fit) ? mixtureErrorRates(fit, threshold) : null;
+  return isUsable(fit) ? fit.ratesAt(threshold) : null;
 }

@@ -1,3 +1,4 @@
+import type { CountModelName } from "@/lib/science/detection/count-model";
 import { shotsOf, type CalibrationCounts } from "@/lib/science/detection/calibration";
 import type { SiteHistogram } from "@/lib/science/detection/histogram";
 
@@ -5,6 +6,10 @@ export type DetectionMethod = "fixed" | "mixture" | "calibration";
 
 export interface DetectionInput {
   method: DetectionMethod;
+  /** What a mixture's components follow; `auto` lets BIC choose. */
+  model: CountModelName | "auto";
+  /** Whether advised thresholds are each site's own, or one for all with the least mean error. */
+  thresholdScope: "site" | "common";
   /** One for all sites or one per site, kept as they are with any method; null lets the method find them. */
   thresholds: readonly number[] | null;
   /** `[site]`, over all kept shots of the run; whole counts start at bin 0. */

@@ -8,6 +8,7 @@ export type DetectionWarningCode =
   | "correction-refused"
   | "rare-component"
   | "leakage-unseen"
+  | "leakage-direction"
   | "threshold-borrowed"
   | "threshold-above-all"
   | "rates-unknown"
@@ -35,6 +36,8 @@ const MESSAGES: Record<DetectionWarningCode, string> = {
   "rare-component": "Fewer than 20 shots belong to one of the two components, so its rate is poorly known.",
   "leakage-unseen":
     "A Poisson mixture does not see shots that change state while they are read: ε_d can be a factor of two too low at 3 % leakage.",
+  "leakage-direction":
+    "The counts tell how many shots change state while they are read, not in which direction; both states are taken to leak alike. Calibration shots can tell.",
   "threshold-borrowed":
     "The site's own counts give no threshold; this one is the median of the other sites' thresholds.",
   "threshold-above-all":

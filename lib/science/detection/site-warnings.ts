@@ -1,8 +1,10 @@
 import type { CalibratedRates } from "@/lib/science/detection/calibration";
 import type { DetectionWarningCode } from "@/lib/science/detection/detection-warnings";
 import { largestBin, shotsInHistogram, type SiteHistogram } from "@/lib/science/detection/histogram";
-import type { OneComponent, TwoComponents } from "@/lib/science/detection/poisson-mixture";
-import { advisePoissonThreshold, poissonErrorRates, type ErrorRates } from "@/lib/science/detection/threshold";
+import type { CountModelName } from "@/lib/science/detection/count-model";
+import type { FittedModel } from "@/lib/science/detection/fitted-model";
+import type { OneComponent } from "@/lib/science/detection/poisson-mixture";
+import type { ErrorRates } from "@/lib/science/detection/threshold";
 
 /** Smallest 1 − ε_d − ε_b that a readout correction accepts is above this. */
 const LEAST_CONTRAST = 0.2;
@@ -11,13 +13,11 @@ const RARE_SHOTS = 20;
 const FEW_CALIBRATION_SHOTS = 100;
 
 /** A site's fitted mixture; null when none was fitted. */
-export type SiteFit = TwoComponents | OneComponent | null;
+export type SiteFit = FittedModel | OneComponent | null;
 
 /** Tells whether a fit has two components that its own best threshold separates. */
-export function isUsable(fit: SiteFit): fit is TwoComponents {
-  if (fit === null || fit.kind !== "two-components") return false;
-  const best = poissonErrorRates(advisePoissonThreshold(fit.dark, fit.bright), fit.dark, fit.bright);
-  return contrast(best) > LEAST_CONTRAST;
+export function isUsable(fit: SiteFit): fit is FittedModel {
+  return fit !== null && fit.kind === "two-components" && contrast(fit.ratesAt(fit.advised)) > LEAST_CONTRAST;
 }
 
 function contrast(rates: ErrorRates): number {
@@ -29,7 +29,8 @@ export function fitWarnings(fit: SiteFit): DetectionWarningCode[] {
   if (fit === null) return [];
   if (fit.kind === "one-component") return [fit.reason];
   if (!isUsable(fit)) return ["inseparable"];
-  const rarest = fit.shots * Math.min(fit.brightWeight, 1 - fit.brightWeight);
+  const { brightWeight } = fit.components;
+  const rarest = fit.shots * Math.min(brightWeight, 1 - brightWeight);
   return rarest < RARE_SHOTS ? ["rare-component"] : [];
 }
 
@@ -37,10 +38,11 @@ export function fitWarnings(fit: SiteFit): DetectionWarningCode[] {
 export function rateWarnings(
   rates: CalibratedRates | null,
   source: "calibration" | "mixture" | null,
+  model: CountModelName | null,
 ): DetectionWarningCode[] {
   if (rates === null) return ["rates-unknown"];
   const codes: DetectionWarningCode[] = [];
-  if (source === "mixture") codes.push("leakage-unseen");
+  if (source === "mixture") codes.push(model === "leakage" ? "leakage-direction" : "leakage-unseen");
   if ((rates.falseBright + rates.falseDark) / 2 > OVERLAP_MEAN_ERROR) codes.push("components-overlap");
   if (contrast(rates) <= LEAST_CONTRAST) codes.push("correction-refused");
   const { dark, bright } = rates.evidence;

@@ -27,7 +27,7 @@ const calibrationOf3: CalibrationCounts = {
 };
 
 function input(part: Partial<DetectionInput>): DetectionInput {
-  return { method: "mixture", thresholds: null, histograms: run, countKind: "whole", calibration: null, ...part };
+  return { method: "mixture", model: "auto", thresholdScope: "site", thresholds: null, histograms: run, countKind: "whole", calibration: null, ...part };
 }
 
 function detected(part: Partial<DetectionInput>): Detected["sites"] {
