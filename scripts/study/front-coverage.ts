@@ -16,23 +16,30 @@ export const METHODS = ["isotonic", "first", "last-upcrossing"] as const satisfi
 
 /** What one method made of a row's repeats. */
 export interface MethodTally {
-  /** γ of the noise-free traces; null without a fit. The same for every task of a row. */
+  /** Of the noise-free traces; null without a fit. The same for every task of a row. */
   trueGamma: number | null;
+  trueVelocity: number | null;
   repeats: number;
   crossings: CoverageTally;
-  gamma: CoverageTally;
-  /** The basic interval of γ, 2γ̂ − high to 2γ̂ − low. */
-  gammaBasic: CoverageTally;
-  velocity: CoverageTally;
+  gamma: IntervalTallies;
+  velocity: IntervalTallies;
   fasterThanLinear: number;
   slowerThanLinear: number;
   noFit: number;
+}
+
+/** Three ways to make an interval of the same replicates: q; 2θ̂ − q; θ̂ ± 1.96 standard errors. */
+export interface IntervalTallies {
+  percentile: CoverageTally;
+  basic: CoverageTally;
+  normal: CoverageTally;
 }
 
 export type FrontTally = Record<(typeof METHODS)[number], MethodTally>;
 
 /** Bootstrap replicates of a repeat. */
 const REPLICATES = 200;
+const Z_95 = 1.959963984540054;
 
 function ruleOf(method: CrossingMethod): FrontRule {
   return { ...DEFAULT_FRONT_RULE, method };
@@ -82,11 +89,11 @@ function simulate(cell: FrontCell, { times_us, laws, plan }: PreparedCell, seed:
 function emptyMethodTally(truth: FrontResult): MethodTally {
   return {
     trueGamma: isNoFit(truth.powerLaw) ? null : truth.powerLaw.gamma.value,
+    trueVelocity: isNoFit(truth.linear) ? null : truth.linear.v_sites_per_ms.value,
     repeats: 0,
     crossings: emptyTally(),
-    gamma: emptyTally(),
-    gammaBasic: emptyTally(),
-    velocity: emptyTally(),
+    gamma: emptyIntervals(),
+    velocity: emptyIntervals(),
     fasterThanLinear: 0,
     slowerThanLinear: 0,
     noFit: 0,
@@ -97,12 +104,8 @@ function addFront(tally: MethodTally, truth: FrontResult, front: FrontResult): v
   tally.repeats += 1;
   const crossings = front.points.flatMap((point, j) => (point.fitted ? held({ ...point, value: point.time_us, error: point.error_us, low: point.low_us, high: point.high_us }, truth.points[j].time_us) : []));
   addRepeat(tally.crossings, crossings);
-  if (!isNoFit(front.powerLaw) && !isNoFit(truth.powerLaw)) {
-    const gamma = held(front.powerLaw.gamma, truth.powerLaw.gamma.value);
-    addRepeat(tally.gamma, gamma);
-    addRepeat(tally.gammaBasic, gamma.map(({ estimate, truth: value }) => ({ estimate: turned(estimate), truth: value })));
-  }
-  if (!isNoFit(front.linear) && !isNoFit(truth.linear)) addRepeat(tally.velocity, held(front.linear.v_sites_per_ms, truth.linear.v_sites_per_ms.value));
+  if (!isNoFit(front.powerLaw)) addIntervals(tally.gamma, held(front.powerLaw.gamma, tally.trueGamma));
+  if (!isNoFit(front.linear)) addIntervals(tally.velocity, held(front.linear.v_sites_per_ms, tally.trueVelocity));
   if (front.verdict === "faster than linear") tally.fasterThanLinear += 1;
   if (front.verdict === "slower than linear") tally.slowerThanLinear += 1;
   if (front.verdict === "no fit") tally.noFit += 1;
@@ -114,8 +117,15 @@ function held({ value, error, low, high }: Pick<Parameter, "value" | "error" | "
   return [{ estimate: { value, error: error ?? Number.NaN, low: low ?? -Infinity, high: high ?? Infinity }, truth }];
 }
 
-function turned({ value, error, low, high }: Estimate): Estimate {
-  return { value, error, low: 2 * value - high, high: 2 * value - low };
+function emptyIntervals(): IntervalTallies {
+  return { percentile: emptyTally(), basic: emptyTally(), normal: emptyTally() };
+}
+
+function addIntervals(tallies: IntervalTallies, found: { estimate: Estimate; truth: number }[]): void {
+  const change = (to: (estimate: Estimate) => Pick<Estimate, "low" | "high">) => found.map(({ estimate, truth }) => ({ estimate: { ...estimate, ...to(estimate) }, truth }));
+  addRepeat(tallies.percentile, found);
+  addRepeat(tallies.basic, change(({ value, low, high }) => ({ low: 2 * value - high, high: 2 * value - low })));
+  addRepeat(tallies.normal, change(({ value, error }) => ({ low: value - Z_95 * error, high: value + Z_95 * error })));
 }
 
 /** Returns the sum of two tallies of one row. */
@@ -127,13 +137,21 @@ export function mergeFrontTallies(first: FrontTally, second: FrontTally): FrontT
 function mergeMethods(first: MethodTally, second: MethodTally): MethodTally {
   return {
     trueGamma: first.trueGamma,
+    trueVelocity: first.trueVelocity,
     repeats: first.repeats + second.repeats,
     crossings: mergeTallies(first.crossings, second.crossings),
-    gamma: mergeTallies(first.gamma, second.gamma),
-    gammaBasic: mergeTallies(first.gammaBasic, second.gammaBasic),
-    velocity: mergeTallies(first.velocity, second.velocity),
+    gamma: mergeIntervals(first.gamma, second.gamma),
+    velocity: mergeIntervals(first.velocity, second.velocity),
     fasterThanLinear: first.fasterThanLinear + second.fasterThanLinear,
     slowerThanLinear: first.slowerThanLinear + second.slowerThanLinear,
     noFit: first.noFit + second.noFit,
+  };
+}
+
+function mergeIntervals(first: IntervalTallies, second: IntervalTallies): IntervalTallies {
+  return {
+    percentile: mergeTallies(first.percentile, second.percentile),
+    basic: mergeTallies(first.basic, second.basic),
+    normal: mergeTallies(first.normal, second.normal),
   };
 }
