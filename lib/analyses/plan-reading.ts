@@ -3,8 +3,8 @@ import type { DetectionSite } from "@/db/schema/detections";
 import { invalidAt, isProblem, type Problem } from "@/lib/problem";
 import type { BrightIs } from "@/lib/science/correlators/packed-spins";
 import { sitesPoorlyKnown, type ReadoutCorrection, type ReadoutReplicates } from "@/lib/science/correlators/readout-correction";
-import { poissonCountLaw } from "@/lib/science/threshold-free/count-laws";
-import { drawLawReplicates, poissonMeanErrors, type SoftMeanErrors } from "@/lib/science/threshold-free/law-replicates";
+import { fittedCountLaw } from "@/lib/science/threshold-free/count-laws";
+import { drawLawReplicates, fittedMeanErrors, type SoftMeanErrors } from "@/lib/science/threshold-free/law-replicates";
 import { softWeights } from "@/lib/science/threshold-free/soft-weights";
 import { readoutOf } from "./plan-analysis";
 
@@ -51,10 +51,10 @@ function softReading({ parameters, sites, countType, brightIs, seed, replicates 
 /** A site's soft weights, and how well their law is known; null where it has no two components that can be told apart. */
 function readSoftly({ mixture }: DetectionSite, brightIs: BrightIs): { weights: Float64Array; errors: SoftMeanErrors | null } | null {
   if (mixture === null) return null;
-  const law = poissonCountLaw(mixture);
+  const law = fittedCountLaw(mixture);
   const soft = softWeights(law, brightIs);
   if (soft === null) return null;
   const { darkError, brightError } = mixture;
   const isKnown = darkError !== undefined && brightError !== undefined;
-  return { weights: soft.value, errors: isKnown ? poissonMeanErrors(law, soft.value, darkError, brightError) : null };
+  return { weights: soft.value, errors: isKnown ? fittedMeanErrors(mixture, soft.value, darkError, brightError) : null };
 }

@@ -15,7 +15,7 @@ import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
 import { drawPoisson } from "@/lib/science/stats/random-variates";
 import { analyseTimeSoftly } from "@/lib/science/threshold-free/analyse-time-softly";
 import { poissonCountLaw } from "@/lib/science/threshold-free/count-laws";
-import { drawLawReplicates, poissonMeanErrors } from "@/lib/science/threshold-free/law-replicates";
+import { drawLawReplicates, fittedMeanErrors } from "@/lib/science/threshold-free/law-replicates";
 import { softenCounts } from "@/lib/science/threshold-free/soft-spins";
 import { softWeights } from "@/lib/science/threshold-free/soft-weights";
 
@@ -117,7 +117,7 @@ function bySoftSpins(counts: Uint16Array, fits: readonly TwoComponents[], seed: 
     const law = poissonCountLaw(fit);
     const value = softWeights(law, "up")?.value;
     if (value === undefined) throw new RangeError(`Rates ${fit.dark} and ${fit.bright} cannot be told apart`);
-    return { value, errors: poissonMeanErrors(law, value, fit.darkError, fit.brightError) };
+    return { value, errors: fittedMeanErrors(fit, value, fit.darkError, fit.brightError) };
   });
   const spins = softenCounts(counts, counts.length / 2, 2, sites.map(({ value }) => value));
   const lawReplicates = carriedIn ? drawLawReplicates(sites.map(({ errors }) => errors), "up", seed, REPLICATES) : null;

@@ -1,3 +1,5 @@
+import { brightLeakageDensity, darkLeakageDensity } from "@/lib/science/detection/leakage-density";
+import { negativeBinomialDensity } from "@/lib/science/detection/negative-binomial-density";
 import { poissonDensity } from "@/lib/science/stats/gamma-functions";
 import { poissonSurvival } from "@/lib/science/stats/special-functions";
 
@@ -11,24 +13,47 @@ export interface CountLaw {
   brightWeight: number;
 }
 
-/** The components fitted to one site's whole counts. */
+/** The components fitted to one site's whole counts, Poisson but for what else is given. */
 export interface FittedComponents {
   dark: number;
   bright: number;
   brightWeight: number;
+  /** Chance per count of signal to leave the state within the window. */
+  leakDark?: number;
+  leakBright?: number;
+  /** Variance beyond Poisson, in units of mean². */
+  darkExcess?: number;
+  brightExcess?: number;
 }
 
 /** Bins reach this many standard deviations beyond the bright mean. */
 const TAIL_DEVIATIONS = 12;
 const LEAST_TAIL = 20;
 
+/** No count of a run lies beyond. */
+const MOST_BINS = 65536;
+
 /** Returns the bins that hold a law with this mean and variance: the last one's share is negligible, or a long tail in one. */
-export function binsFor(mean: number, variance: number): number {
+function binsFor(mean: number, variance: number): number {
   return Math.ceil(mean + TAIL_DEVIATIONS * Math.sqrt(variance)) + LEAST_TAIL;
 }
 
+/** Returns the law of fitted components: with leakage where a leak is given, negative binomial where an excess is, else Poisson. */
+export function fittedCountLaw(components: FittedComponents): CountLaw {
+  const { dark, bright, brightWeight, leakDark, leakBright, darkExcess, brightExcess } = components;
+  if (leakDark !== undefined || leakBright !== undefined) {
+    const law = { dark, bright, leakDark: leakDark ?? 0, leakBright: leakBright ?? 0 };
+    return countLawOf((n) => darkLeakageDensity(n, law), (n) => brightLeakageDensity(n, law), brightWeight, binsFor(bright, bright));
+  }
+  if (darkExcess !== undefined || brightExcess !== undefined) {
+    const bins = Math.min(MOST_BINS, binsFor(bright, bright + (brightExcess ?? 0) * bright * bright));
+    return countLawOf((n) => negativeBinomialDensity(n, dark, darkExcess ?? 0), (n) => negativeBinomialDensity(n, bright, brightExcess ?? 0), brightWeight, bins);
+  }
+  return poissonCountLaw(components);
+}
+
 /** Returns the law of two Poisson components. */
-export function poissonCountLaw({ dark, bright, brightWeight }: FittedComponents): CountLaw {
+export function poissonCountLaw({ dark, bright, brightWeight }: Pick<FittedComponents, "dark" | "bright" | "brightWeight">): CountLaw {
   const bins = binsFor(bright, bright);
   return { dark: poissonBins(dark, bins), bright: poissonBins(bright, bins), brightWeight };
 }

@@ -4,7 +4,7 @@ import type { ReadoutReplicates } from "@/lib/science/correlators/readout-correc
 import { createRandomStream } from "@/lib/science/stats/philox";
 import { RANDOM_PURPOSES } from "@/lib/science/stats/random-purposes";
 import { drawNormal } from "@/lib/science/stats/random-variates";
-import type { CountLaw } from "@/lib/science/threshold-free/count-laws";
+import { fittedCountLaw, type FittedComponents } from "@/lib/science/threshold-free/count-laws";
 
 /** How well a site's laws of counts are known: standard errors of its soft spin's mean over each component. */
 export interface SoftMeanErrors {
@@ -12,12 +12,34 @@ export interface SoftMeanErrors {
   bright: number;
 }
 
+/** Steps of the slopes, relative to the rates. */
+const STEP = 1e-4;
+
 /**
- * Returns these errors for fitted Poisson rates with standard errors, by the delta method: d/dλ Σ p(n; λ) f(n) = Σ p(n; λ) (f(n + 1) − f(n)).
+ * Returns these errors for fitted components whose two rates have standard errors, by the delta method with central differences. What else a
+ * model has (leaks, excess variances) counts as known.
  */
-export function poissonMeanErrors(law: CountLaw, value: Float64Array, darkError: number, brightError: number): SoftMeanErrors {
-  const slope = (shares: Float64Array) => shares.reduce((sum, share, n) => (n + 1 < value.length ? sum + share * (value[n + 1] - value[n]) : sum), 0);
-  return { dark: Math.abs(slope(law.dark)) * darkError, bright: Math.abs(slope(law.bright)) * brightError };
+export function fittedMeanErrors(components: FittedComponents, value: Float64Array, darkError: number, brightError: number): SoftMeanErrors {
+  const means = (change: Partial<FittedComponents>) => {
+    const law = fittedCountLaw({ ...components, ...change });
+    return { dark: meanOver(law.dark, value), bright: meanOver(law.bright, value) };
+  };
+  const shifts = (rate: "dark" | "bright", error: number) => {
+    const step = STEP * components[rate];
+    if (step === 0) return { dark: 0, bright: 0 };
+    const above = means({ [rate]: components[rate] + step });
+    const below = means({ [rate]: components[rate] - step });
+    return { dark: ((above.dark - below.dark) / (2 * step)) * error, bright: ((above.bright - below.bright) / (2 * step)) * error };
+  };
+  const byDark = shifts("dark", darkError);
+  const byBright = shifts("bright", brightError);
+  return { dark: Math.hypot(byDark.dark, byBright.dark), bright: Math.hypot(byDark.bright, byBright.bright) };
+}
+
+/** A law with a few bins more or less than there are soft spins has its tail in the last of them. */
+function meanOver(shares: Float64Array, value: Float64Array): number {
+  const last = value.length - 1;
+  return shares.reduce((sum, share, n) => sum + share * value[Math.min(n, last)], 0);
 }
 
 /**

@@ -3,8 +3,8 @@ import { sitesPoorlyKnown } from "@/lib/science/correlators/readout-correction";
 import { planDistanceTraces } from "@/lib/science/correlators/trace-plan";
 import { mean, standardDeviation } from "@/lib/science/stats/intervals";
 import { analyseTimeSoftly, type SoftTimeTask } from "@/lib/science/threshold-free/analyse-time-softly";
-import { poissonCountLaw } from "@/lib/science/threshold-free/count-laws";
-import { drawLawReplicates, poissonMeanErrors } from "@/lib/science/threshold-free/law-replicates";
+import { fittedCountLaw, poissonCountLaw } from "@/lib/science/threshold-free/count-laws";
+import { drawLawReplicates, fittedMeanErrors } from "@/lib/science/threshold-free/law-replicates";
 import { softWeights } from "@/lib/science/threshold-free/soft-weights";
 import { plainCorrelator, plainMean, plainMultiplicities } from "@/tests/science/correlators/plain-bootstrap";
 import { correlatedSpins } from "@/tests/science/correlators/spin-samples";
@@ -29,13 +29,26 @@ describe("uncertain laws of counts", () => {
   it("move the soft spin's mean over a component as a small change of its rate does", () => {
     const law = poissonCountLaw(OVERLAPPING);
     const value = softWeights(law, "up")?.value ?? new Float64Array(0);
-    const { dark, bright } = poissonMeanErrors(law, value, 0.01, 0.02);
+    const { dark, bright } = fittedMeanErrors(OVERLAPPING, value, 0.01, 0.02);
     const meanAt = (rate: number) => {
       const shares = poissonCountLaw({ ...OVERLAPPING, dark: rate }).dark;
       return shares.reduce((sum, share, n) => sum + share * value[n], 0);
     };
     expect(dark).toBeCloseTo(Math.abs(meanAt(2.005) - meanAt(1.995)), 7);
     expect(bright).toBeCloseTo(2 * Math.abs(meanAt(8.005) - meanAt(7.995)), 7);
+  });
+
+  it("move it by both rates where leakage mixes them, and not at all with a rate of 0", () => {
+    const leaking = { ...OVERLAPPING, leakDark: 0.01, leakBright: 0.005 };
+    const value = softWeights(fittedCountLaw(leaking), "up")?.value ?? new Float64Array(0);
+    const meanAt = (bright: number) => {
+      const shares = fittedCountLaw({ ...leaking, bright }).dark;
+      return shares.reduce((sum, share, n) => sum + share * (value[n] ?? value[value.length - 1]), 0);
+    };
+    const onlyBright = fittedMeanErrors(leaking, value, 0, 0.02);
+    expect(onlyBright.dark).toBeCloseTo(2 * (meanAt(8.005) - meanAt(7.995)), 7);
+    expect(onlyBright.dark).toBeGreaterThan(1e-4);
+    expect(fittedMeanErrors({ ...OVERLAPPING, dark: 0 }, value, 0.01, 0).dark).toBe(0);
   });
 
   it("draw means over both components around −1 and +1, the other way round when bright is down", () => {

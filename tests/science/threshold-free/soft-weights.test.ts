@@ -1,7 +1,7 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { poissonErrorRates, advisePoissonThreshold } from "@/lib/science/detection/threshold";
-import { countLawOf, poissonCountLaw, type CountLaw } from "@/lib/science/threshold-free/count-laws";
+import { countLawOf, fittedCountLaw, poissonCountLaw, type CountLaw } from "@/lib/science/threshold-free/count-laws";
 import { softenCounts } from "@/lib/science/threshold-free/soft-spins";
 import { softWeights, type SoftWeights } from "@/lib/science/threshold-free/soft-weights";
 import { poissonDensity } from "@/lib/science/stats/gamma-functions";
@@ -114,6 +114,23 @@ describe("a law of counts", () => {
         expect(sum(bright)).toBeCloseTo(1, 10);
       }),
     );
+  });
+
+  it("has the leaks or the excess variance of the fitted components, and is Poisson without them", () => {
+    const rates = { dark: 1, bright: 9, brightWeight: 0.5 };
+    const over = (shares: Float64Array) => {
+      const centre = sum(shares.map((share, n) => share * n));
+      return { centre, variance: sum(shares.map((share, n) => share * (n - centre) ** 2)) };
+    };
+    const leaking = fittedCountLaw({ ...rates, leakDark: 0.01, leakBright: 0.002 });
+    // One change at a random moment, with chance 0.01 · 8 at most, adds half the signal.
+    expect(over(leaking.dark).centre).toBeCloseTo(1 + 8 * (1 - (1 - Math.exp(-0.08)) / 0.08), 8);
+    expect(over(leaking.bright).centre).toBeLessThan(9);
+    const noisy = fittedCountLaw({ ...rates, darkExcess: 0.05, brightExcess: 0.02 });
+    expect(over(noisy.bright).centre).toBeCloseTo(9, 8);
+    expect(over(noisy.bright).variance).toBeCloseTo(9 + 0.02 * 81, 6);
+    for (const law of [leaking, noisy]) expect([sum(law.dark), sum(law.bright)]).toEqual([expect.closeTo(1, 12), expect.closeTo(1, 12)]);
+    expect(fittedCountLaw(rates)).toEqual(poissonCountLaw(rates));
   });
 
   it("is the same from densities as from Poisson rates, with the rest in the last bin", () => {
