@@ -1,3 +1,5 @@
+import { componentDensities } from "@/lib/science/detection/component-densities";
+import type { ModelComponents } from "@/lib/science/detection/count-model";
 import { scaleLinear, scaleLog } from "d3";
 import { AxisBottom, round } from "./axis";
 import type { ChartTheme } from "./chart-theme";
@@ -12,7 +14,7 @@ export interface SiteHistogram {
   /** `[bin]`, shots. */
   frequencies: number[];
   threshold: number | null;
-  mixture: { dark: number; bright: number; brightWeight: number } | null;
+  mixture: ModelComponents | null;
 }
 
 export interface HistogramProps {
@@ -75,6 +77,9 @@ export function HistogramMarks(props: HistogramProps) {
   );
 }
 
+/** Shots; below it a component is no longer drawn. */
+const LEAST_DRAWN = 0.01;
+
 interface CurvesProps {
   histogram: SiteHistogram;
   shots: number;
@@ -86,10 +91,11 @@ interface CurvesProps {
 
 function MixtureCurves({ histogram, shots, lastCount, count, frequency, theme }: CurvesProps) {
   if (!histogram.mixture) return null;
-  const { dark, bright, brightWeight } = histogram.mixture;
+  const { brightWeight } = histogram.mixture;
+  const densities = componentDensities(histogram.mixture);
   const components = [
-    { mean: dark, weight: 1 - brightWeight, colour: theme.dark },
-    { mean: bright, weight: brightWeight, colour: theme.bright },
+    { density: densities.dark, weight: 1 - brightWeight, colour: theme.dark },
+    { density: densities.bright, weight: brightWeight, colour: theme.bright },
   ];
   return (
     <g fill="none" strokeWidth={1.4}>
@@ -101,7 +107,7 @@ function MixtureCurves({ histogram, shots, lastCount, count, frequency, theme }:
 }
 
 function componentPath(
-  component: { mean: number; weight: number },
+  component: { density: (n: number) => number; weight: number },
   shots: number,
   first: number,
   last: number,
@@ -109,11 +115,9 @@ function componentPath(
   frequency: (value: number) => number,
 ): string {
   const points: string[] = [];
-  let logFactorial = 0;
-  for (let value = 0; value <= last; value++) {
-    if (value > 0) logFactorial += Math.log(value);
-    const expected = shots * component.weight * Math.exp(value * Math.log(component.mean) - component.mean - logFactorial);
-    if (value >= first && expected > 0.01) points.push(`${round(count(value))},${round(frequency(expected))}`);
+  for (let value = Math.max(0, first); value <= last; value++) {
+    const expected = shots * component.weight * component.density(value);
+    if (expected > LEAST_DRAWN) points.push(`${round(count(value))},${round(frequency(expected))}`);
   }
   return points.length > 1 ? `M${points.join("L")}` : "";
 }

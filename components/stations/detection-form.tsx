@@ -3,6 +3,7 @@
 import { useRouter } from "next/navigation";
 import { useState, type FormEvent, type ReactNode } from "react";
 import { ApiProblem, sendJson } from "@/components/data/fetch-json";
+import { ChoiceField } from "@/components/forms/choice-field";
 import { FormField } from "@/components/forms/form-field";
 import { ProblemNotice } from "@/components/shell/problem-notice";
 import type { ProblemPlace } from "@/lib/problem";
@@ -18,10 +19,21 @@ interface DetectionFormProps {
 type Method = DetectionAnswer["method"];
 
 const EXPLANATIONS: Record<Method, string> = {
-  mixture: "Two Poisson components are fitted to each site’s counts; the threshold is the half-integer with the least ε_d + ε_b. Leakage during the window is not seen.",
+  mixture: "Two components are fitted to each site’s counts; the threshold is the half-integer with the least ε_d + ε_b.",
   calibration: "Error rates are counted in the calibration shots, with Clopper–Pearson intervals.",
   fixed: "The thresholds are yours. Error rates come from calibration shots when there are any, else from the mixture.",
 };
+
+const MODELS = [
+  ["auto", "chosen by BIC"],
+  ["poisson", "Poisson"],
+  ["leakage", "Poisson with leakage in the window"],
+  ["negative-binomial", "negative binomial (gain noise)"],
+] as const;
+const SCOPES = [
+  ["site", "each site its own"],
+  ["common", "one for all sites"],
+] as const;
 
 /** Saves the next numbered detection; one saved is never edited. */
 export function DetectionForm({ runId, sites, hasCalibration, latest }: DetectionFormProps) {
@@ -37,7 +49,7 @@ export function DetectionForm({ runId, sites, hasCalibration, latest }: Detectio
     setRefusal(null);
     const form = new FormData(event.currentTarget);
     try {
-      await sendJson("POST", `/api/v1/runs/${runId}/detections`, { method, ...thresholdFields(form), ...labelField(form) });
+      await sendJson("POST", `/api/v1/runs/${runId}/detections`, { method, ...modelFields(form), ...thresholdFields(form), ...labelField(form) });
       window.history.replaceState(null, "", window.location.pathname);
       router.refresh();
     } catch (error) {
@@ -60,6 +72,10 @@ export function DetectionForm({ runId, sites, hasCalibration, latest }: Detectio
         </div>
         <p className="label mt-2">{EXPLANATIONS[method]}</p>
       </fieldset>
+      {method !== "calibration" && (
+        <ChoiceField label="Components" name="model" choices={MODELS} hint="BIC takes a richer law only when it is clearly better." disabled={busy} />
+      )}
+      {method !== "fixed" && <ChoiceField label="Advised thresholds" name="thresholdScope" choices={SCOPES} disabled={busy} />}
       <FormField
         label="Given thresholds θ"
         name="thresholds"
@@ -99,6 +115,14 @@ function MethodChoice({ method, chosen, onChoose, disabled = false, children }: 
 function placeText(where: string): string {
   const index = /\[(\d+)\]/.exec(where);
   return index ? `Value ${Number(index[1]) + 1} ` : "";
+}
+
+function modelFields(form: FormData): Record<string, string> {
+  const chosen = ["model", "thresholdScope"].flatMap((name) => {
+    const value = form.get(name);
+    return typeof value === "string" ? [[name, value]] : [];
+  });
+  return Object.fromEntries(chosen);
 }
 
 function thresholdFields(form: FormData): { threshold?: number | string; thresholds?: (number | string)[] } {

@@ -63,6 +63,7 @@ export function DetectionStation({ runId, siteNames, detections, mayCreate, hasC
             <SiteHistogramChart key={histogram.site} histogram={histogram} logarithmic={scale === "log"} lastCount={lastCount} height={siteNames.length > MANY_SITES ? 84 : 118} />
           ))}
         </div>
+        {detection?.model && <p className="mt-4 max-w-[80ch] text-sm text-muted">{detection.model.reason}</p>}
         {detection && <DetectionTable detection={detection} siteNames={siteNames} />}
       </div>
       <aside className="min-w-0">

@@ -1,3 +1,5 @@
+import type { ModelComponents } from "@/lib/science/detection/count-model";
+
 /** A saved detection as the API answers it; arrays are `[site]`. */
 export interface DetectionAnswer {
   id: string;
@@ -12,7 +14,9 @@ export interface DetectionAnswer {
   falseBrightInterval: ([number, number] | null)[];
   falseDarkInterval: ([number, number] | null)[];
   fidelity: (number | null)[];
-  mixture: ({ dark: number; bright: number; brightWeight: number } | null)[];
+  mixture: (ModelComponents | null)[];
+  /** What the components of a mixture follow, and why; null without one. */
+  model: { name: string; chosen: string; reason: string } | null;
   warnings: { code: string; message: string }[][];
   createdBy: string;
   createdAt: string;

@@ -1,4 +1,5 @@
 import { describe, expect, it } from "vitest";
+import { componentDensities } from "@/lib/science/detection/component-densities";
 import { brightLeakageDensity, darkLeakageDensity } from "@/lib/science/detection/leakage-density";
 import { negativeBinomialDensity } from "@/lib/science/detection/negative-binomial-density";
 import { poissonDensity } from "@/lib/science/stats/gamma-functions";
@@ -66,5 +67,14 @@ describe("the negative binomial law", () => {
     expect(negativeBinomialDensity(3, 2, 1)).toBeCloseTo((1 / 3) * (2 / 3) ** 3, 13);
     expect(negativeBinomialDensity(7, 5, 0)).toBe(poissonDensity(7, 5));
     expect(negativeBinomialDensity(0, 0, 0.3)).toBe(1);
+  });
+});
+
+describe("the densities of fitted components", () => {
+  it("follow the model that the parameters name", () => {
+    const poisson = { dark: 1, bright: 10, brightWeight: 0.4 };
+    expect(componentDensities(poisson).bright(9)).toBe(poissonDensity(9, 10));
+    expect(componentDensities({ ...poisson, leakDark: 0.01, leakBright: 0.01 }).dark(3)).toBe(darkLeakageDensity(3, { ...poisson, leakDark: 0.01, leakBright: 0.01 }));
+    expect(componentDensities({ ...poisson, darkExcess: 0.1, brightExcess: 0.2 }).bright(9)).toBe(negativeBinomialDensity(9, 10, 0.2));
   });
 });
