@@ -2,16 +2,17 @@ import "server-only";
 import { and, eq, max } from "drizzle-orm";
 import { database } from "@/db/connection";
 import { newId } from "@/db/new-id";
-import { detections } from "@/db/schema/detections";
+import { detections, type DetectionSite } from "@/db/schema/detections";
 import { runs } from "@/db/schema/runs";
 import { inTransaction } from "@/db/transaction";
 import { refusal, type Actor } from "@/lib/accounts/policy";
 import { invalidAt, isProblem, problem, type Problem } from "@/lib/problem";
 import { findCurrentVersion, findRunInGroup, type RunVersionRow } from "@/lib/runs/find-run";
 import { loadCalibration, loadHistograms } from "@/lib/runs/load-counts";
-import { detect, type Detected } from "@/lib/science/detection/detect";
+import { driftWarning, type SiteDrift } from "@/lib/science/detection/brightness-drift";
+import { detect } from "@/lib/science/detection/detect";
 import type { CreateDetectionInput } from "./detection-schemas";
-import { showDetection, type ShownDetection } from "./show-detection";
+import { showDetection, type DetectionRow, type ShownDetection } from "./show-detection";
 
 /** Makes the next numbered detection of a run from its current version; one that is saved is never changed. */
 export async function createDetection(actor: Actor, runId: string, input: CreateDetectionInput): Promise<ShownDetection | Problem> {
@@ -46,7 +47,7 @@ export async function createDetection(actor: Actor, runId: string, input: Create
   });
 }
 
-async function detectSites(version: RunVersionRow, input: CreateDetectionInput): Promise<Detected | Problem> {
+async function detectSites(version: RunVersionRow, input: CreateDetectionInput): Promise<Pick<DetectionRow, "sites" | "model"> | Problem> {
   const key = { runId: version.runId, version: version.number };
   const [histograms, calibration] = await Promise.all([loadHistograms(database(), key, "shots"), loadCalibration(database(), key, version.sites)]);
   const detected = detect({
@@ -59,5 +60,11 @@ async function detectSites(version: RunVersionRow, input: CreateDetectionInput):
     calibration,
   });
   if (detected.kind === "refused") return invalidAt(detected.where, detected.message);
-  return detected;
+  return { model: detected.model, sites: detected.sites.map((site) => withDrift(site, version.drift?.[site.site])) };
+}
+
+/** Drift is known from the reading of the shots, not from their histograms. */
+function withDrift(site: DetectionSite, drift: SiteDrift | undefined): DetectionSite {
+  const warning = drift === undefined ? null : driftWarning(drift);
+  return warning === null ? site : { ...site, warnings: [...site.warnings, warning] };
 }

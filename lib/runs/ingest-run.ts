@@ -126,6 +126,7 @@ async function showVersion(transaction: Transaction, run: RunRow, key: VersionKe
     calibrationDarkShots: collector.shotsIn(DARK_SLOT),
     calibrationBrightShots: collector.shotsIn(BRIGHT_SLOT),
     brightness: times.map(({ brightness }) => brightness),
+    drift: collector.drift(),
     warnings: versionWarnings(histograms, found.siteNames, shotsPerTime),
     createdAt: new Date(),
   });

@@ -2,6 +2,7 @@ import "server-only";
 import type { Database } from "@/db/connection";
 import { BRIGHT_SLOT, DARK_SLOT } from "@/db/schema/shot-blocks";
 import type { ArchiveRole, ShotBatch } from "@/lib/formats/shot-batch";
+import { addToSegments, brightnessDrift, createSegmentSums, type SegmentSums, type SiteDrift } from "@/lib/science/detection/brightness-drift";
 import { countHistograms, mergeHistograms, type SiteHistogram } from "@/lib/science/detection/histogram";
 import type { VersionKey } from "./block-store";
 import type { CountType, ShotBlock } from "./shot-block";
@@ -16,6 +17,8 @@ interface Slot {
   writer: SlotWriter;
   /** `[site]`, sums of counts for the brightness. */
   sums: Float64Array;
+  /** The same by order of arrival, for the drift. */
+  segments: SegmentSums;
 }
 
 /** Takes batches from readers and keeps what a version consists of; memory does not grow with the number of shots. */
@@ -40,7 +43,8 @@ export class ShotCollector {
     this.countMissing(batch);
     this.addToHistograms(batch);
     for (const [slot, shots] of this.shotsBySlot(batch)) {
-      const { writer, sums } = this.slotAt(slot);
+      const { writer, sums, segments } = this.slotAt(slot);
+      for (const s of shots) addToSegments(segments, batch.counts, s * this.sites);
       writer.add(gather(batch, shots, sums));
       if (writer.isFull) await writer.flush();
     }
@@ -63,6 +67,12 @@ export class ShotCollector {
       }))
       .filter(({ shots }) => shots > 0)
       .sort((first, second) => first.time_us - second.time_us);
+  }
+
+  /** `[site]`, over all evolution times. */
+  drift(): SiteDrift[] {
+    const times = [...this.slots].filter(([slot]) => slot >= 0).map(([, { segments }]) => segments);
+    return brightnessDrift(times, this.sites);
   }
 
   /** How many evolution times have been met. */
@@ -117,7 +127,7 @@ export class ShotCollector {
   }
 
   private newSlot(slot: number, time_us: number): Slot {
-    return { time_us, writer: new SlotWriter(this.database, this.key, slot, this.sites), sums: new Float64Array(this.sites) };
+    return { time_us, writer: new SlotWriter(this.database, this.key, slot, this.sites), sums: new Float64Array(this.sites), segments: createSegmentSums(this.sites) };
   }
 
   private async relieve(): Promise<void> {
