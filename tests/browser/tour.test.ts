@@ -29,7 +29,7 @@ describe("a newcomer", () => {
     const started = Date.now();
     await signInAs(watched.page, "reader");
     await watched.page.goto(`${await demoRun(watched)}/front`);
-    await watched.page.getByText(/linear: β =|Not distinguishable/i).first().waitFor();
+    await watched.page.getByText(/linear( within this window)?: β =|Not distinguishable/i).first().waitFor();
     expect(Date.now() - started).toBeLessThan(60_000);
     expect(watched.faults).toEqual([]);
     await watched.context.close();

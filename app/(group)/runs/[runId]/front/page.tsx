@@ -19,16 +19,15 @@ export default async function FrontPage({ params, searchParams }: PageProps<"/ru
       {async (row) => {
         const studies = await latestStudies(actor, row.analysis.id);
         return (
-          <>
-            <Suspense>
-              <FrontStation
-                analysisId={row.analysis.id}
-                siteNames={row.siteNames}
-                traces={await readTraces(row)}
-                front={await readFront(row)}
-                comparison={isProblem(studies) ? null : (studies.nullFront.done?.result.sentence ?? null)}
-              />
-            </Suspense>
+          // One boundary for both: the studies must not stand where the front will be.
+          <Suspense>
+            <FrontStation
+              analysisId={row.analysis.id}
+              siteNames={row.siteNames}
+              traces={await readTraces(row)}
+              front={await readFront(row)}
+              comparison={isProblem(studies) ? null : (studies.nullFront.done?.result.sentence ?? null)}
+            />
             {!isProblem(studies) && (
               <StudiesSection
                 key={row.analysis.id}
@@ -40,7 +39,7 @@ export default async function FrontPage({ params, searchParams }: PageProps<"/ru
                 mayCancel={may(actor, "job.cancel")}
               />
             )}
-          </>
+          </Suspense>
         );
       }}
     </AnalysisView>
