@@ -24,6 +24,8 @@ export interface MethodTally {
   gamma: IntervalTallies;
   velocity: IntervalTallies;
   fasterThanLinear: number;
+  /** Repeats in which γ̂ + 1.96 standard errors is below 1. */
+  fasterByNormal: number;
   slowerThanLinear: number;
   noFit: number;
 }
@@ -95,6 +97,7 @@ function emptyMethodTally(truth: FrontResult): MethodTally {
     gamma: emptyIntervals(),
     velocity: emptyIntervals(),
     fasterThanLinear: 0,
+    fasterByNormal: 0,
     slowerThanLinear: 0,
     noFit: 0,
   };
@@ -104,7 +107,11 @@ function addFront(tally: MethodTally, truth: FrontResult, front: FrontResult): v
   tally.repeats += 1;
   const crossings = front.points.flatMap((point, j) => (point.fitted ? held({ ...point, value: point.time_us, error: point.error_us, low: point.low_us, high: point.high_us }, truth.points[j].time_us) : []));
   addRepeat(tally.crossings, crossings);
-  if (!isNoFit(front.powerLaw)) addIntervals(tally.gamma, held(front.powerLaw.gamma, tally.trueGamma));
+  if (!isNoFit(front.powerLaw)) {
+    const { gamma } = front.powerLaw;
+    addIntervals(tally.gamma, held(gamma, tally.trueGamma));
+    if (gamma.value !== null && gamma.error !== null && gamma.value + Z_95 * gamma.error < 1) tally.fasterByNormal += 1;
+  }
   if (!isNoFit(front.linear)) addIntervals(tally.velocity, held(front.linear.v_sites_per_ms, tally.trueVelocity));
   if (front.verdict === "faster than linear") tally.fasterThanLinear += 1;
   if (front.verdict === "slower than linear") tally.slowerThanLinear += 1;
@@ -143,6 +150,7 @@ function mergeMethods(first: MethodTally, second: MethodTally): MethodTally {
     gamma: mergeIntervals(first.gamma, second.gamma),
     velocity: mergeIntervals(first.velocity, second.velocity),
     fasterThanLinear: first.fasterThanLinear + second.fasterThanLinear,
+    fasterByNormal: first.fasterByNormal + second.fasterByNormal,
     slowerThanLinear: first.slowerThanLinear + second.slowerThanLinear,
     noFit: first.noFit + second.noFit,
   };

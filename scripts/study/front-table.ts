@@ -9,17 +9,17 @@ const KINDS = ["percentile", "basic", "normal"] as const;
 export function frontTable(tallies: readonly FrontTally[]): string {
   const rows = FRONT_CELLS.flatMap((cell, at) => METHODS.map((method) => `| ${methodRow(cell, method, tallies[at][method]).join(" | ")} |`));
   return [
-    "| truth | M | method | true γ | bias of γ | RMS of γ | bias of v, % | τ | γ and β, percentile | basic | normal | v, percentile | basic | normal | “faster” | “slower” |",
-    "|---|---|---|---|---|---|---|---|---|---|---|---|---|---|---|---|",
+    "| truth | M | method | true γ | bias of γ | RMS of γ | bias of v, % | τ | γ and β, percentile | basic | normal | v, percentile | basic | normal | “faster” | “faster”, normal | “slower” |",
+    "|---|---|---|---|---|---|---|---|---|---|---|---|---|---|---|---|---|",
     ...rows,
   ].join("\n");
 }
 
 function methodRow({ name, shots }: FrontCell, method: string, tally: MethodTally): (string | number)[] {
-  const { trueGamma, trueVelocity, crossings, gamma, velocity, fasterThanLinear, slowerThanLinear, repeats } = tally;
+  const { trueGamma, trueVelocity, crossings, gamma, velocity, fasterThanLinear, fasterByNormal, slowerThanLinear, repeats } = tally;
   const numbers = [trueGamma?.toFixed(3) ?? "–", biasText(gamma.percentile, 1), rmsText(gamma.percentile), biasText(velocity.percentile, 100 / (trueVelocity ?? NaN))];
   const coverages = [crossings, ...KINDS.map((kind) => gamma[kind]), ...KINDS.map((kind) => velocity[kind])].map(coverageText);
-  const shares = [fasterThanLinear, slowerThanLinear].map((count) => shareText(count, repeats));
+  const shares = [fasterThanLinear, fasterByNormal, slowerThanLinear].map((count) => shareText(count, repeats));
   return [name, shots, method, ...numbers, ...coverages, ...shares];
 }
 
