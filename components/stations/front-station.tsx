@@ -55,7 +55,7 @@ export function FrontStation({ analysisId, siteNames, traces, front, comparison 
         />
         <FitTable front={front} />
       </div>
-      <div className="mt-7 grid grid-cols-1 gap-x-8 gap-y-6 lg:grid-cols-3">
+      <div className="mt-7 grid grid-cols-1 gap-x-8 gap-y-6 lg:grid-cols-2 xl:grid-cols-4">
         <TraceChart
           title={`Trace of ${traceName(traces, trace, siteNames)}`}
           caption="pick a row or a point to see another"
@@ -65,11 +65,11 @@ export function FrontStation({ analysisId, siteNames, traces, front, comparison 
         />
         <ResidualsChart title="Residuals" caption="power law filled, straight line hollow" residuals={residualsOf(front)} height={250} />
         <VelocityTable front={front} />
+        {front.influence.length > 0 && (
+          <InfluenceTable front={front} nameOf={(label) => traceName(traces, traces.labels.indexOf(label), siteNames)} />
+        )}
       </div>
-      <div className="mt-7 grid grid-cols-1 gap-x-8 gap-y-6 lg:grid-cols-3">
-        {front.influence.length > 0 && <InfluenceTable front={front} />}
-        {front.unresolved.length > 0 && <UnresolvedList front={front} />}
-      </div>
+      {front.unresolved.length > 0 && <UnresolvedList front={front} />}
     </>
   );
 }
@@ -92,7 +92,7 @@ function residualsOf(front: FrontResult) {
 
 function UnresolvedList({ front }: { front: FrontResult }) {
   return (
-    <section className="lg:col-span-2">
+    <section className="mt-7">
       <h2 className="text-[1rem]">Traces that entered no fit</h2>
       <ul className="mt-1 columns-1 gap-8 text-muted sm:columns-2">
         {front.unresolved.map((trace) => (

@@ -2,7 +2,7 @@ import { fixedNumber, plainNumber } from "@/lib/number-text";
 import type { FrontResult, PointInfluence } from "@/lib/science/front/front-result";
 
 /** What the fits would be without each point, the one that moves γ most first. */
-export function InfluenceTable({ front }: { front: FrontResult }) {
+export function InfluenceTable({ front, nameOf }: { front: FrontResult; nameOf: (label: string) => string }) {
   const sorted = [...front.influence].sort((first, second) => size(second) - size(first));
   return (
     <section className="min-w-0">
@@ -18,17 +18,17 @@ export function InfluenceTable({ front }: { front: FrontResult }) {
                 β
               </th>
               <th scope="col" className="text-right">
-                v (sites/ms)
+                v
               </th>
               <th scope="col" className="text-right">
-                shift of γ (errors)
+                γ moves (σ)
               </th>
             </tr>
           </thead>
           <tbody>
             {sorted.map((point) => (
               <tr key={point.label}>
-                <th scope="row">{point.label}</th>
+                <th scope="row">{nameOf(point.label)}</th>
                 <td className="text-right">{plainNumber(point.beta, 3)}</td>
                 <td className="text-right">{plainNumber(point.v_sites_per_ms, 3)}</td>
                 <td className="text-right">{fixedNumber(point.gammaShiftInErrors, 2)}</td>
